@@ -1,0 +1,81 @@
+// Everything a solution depends on, in one flat value: the medium with its records' doubts, the
+// recipe's inputs with theirs. No names are looked up any more; no ranges are judged yet.
+#pragma once
+
+#include <optional>
+
+#include "capsigh/balance/medium.hpp"
+#include "capsigh/models/atmosphere.hpp"
+#include "capsigh/quantity/uncertain.hpp"
+#include "capsigh/recipe/recipe.hpp"
+
+namespace capsigh {
+
+/// The ambient pressure: stated, or by the standard atmosphere from an altitude.
+struct AmbientCase {
+  std::optional<Uncertain<Length>> altitude;
+  StandardAtmosphere atmosphere;
+  Uncertain<Pressure> stated;  ///< where there is no altitude
+};
+
+/// The content of one gas in the measure it was given in; the number is in SI units of it.
+struct ContentCase {
+  std::size_t gas = 0;
+  ContentMeasure measure = ContentMeasure::volumes;
+  Uncertain<Fraction> amount;
+};
+
+/// One line of the headspace's composition: a gas or a mixture, its share, and how that splits over
+/// the medium's gases. The line that takes the rest has an unused share.
+struct ShareLine {
+  std::string name;
+  Uncertain<Fraction> share;
+  bool rest = false;
+  Shares parts;
+};
+
+/// Which two of temperature, pressure and content are given; the third is solved for.
+enum class Known { temperature_pressure, temperature_content, pressure_content };
+
+struct ContactCase {
+  Known known = Known::temperature_pressure;
+  std::optional<Uncertain<Temperature>> temperature;
+  std::optional<Uncertain<GaugePressure>> gauge_pressure;  ///< or ...
+  std::optional<Uncertain<Pressure>> absolute_pressure;
+  std::optional<ContentCase> content;
+  PerGas<ShareLine> gas;
+};
+
+struct ContainerCase {
+  Uncertain<Volume> brimful;
+  Uncertain<Volume> fill;
+  Uncertain<Fraction> closing_air;
+  GaugePressure closing_pressure;
+};
+
+struct OpeningCase {
+  std::optional<Uncertain<Temperature>> temperature;
+};
+
+struct Case {
+  Medium medium;
+  AmbientCase ambient;
+  ContactCase contact;
+  PerGas<ContentCase> targets;
+  std::optional<ContainerCase> container;
+  std::optional<OpeningCase> opening;
+  PerGas<std::uint8_t> in_contact;    ///< whether a gas belongs to the headspace at the contact
+  PerGas<std::uint8_t> in_container;  ///< whether it belongs to the closed package
+  Shares air;                         ///< of the room and of air in a headspace
+  bool ideal_volumes = false;
+  std::size_t co2 = 0;  ///< its place among the gases; size() where there is none
+};
+
+/// The dry composition at the contact at the current z, adding up to one.
+Shares contact_shares(const Case& c);
+
+/// Every doubt of the case that is not zero, each with the z that moves it: inputs by their keys,
+/// records by theirs. Pointers stay valid as long as the case does.
+std::vector<Doubt> each_doubt(Case& c);
+
+}  // namespace capsigh

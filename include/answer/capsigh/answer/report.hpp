@@ -1,0 +1,57 @@
+// A whole report: bound, solved, judged, doubted and sourced; what the renderers show.
+#pragma once
+
+#include <string>
+#include <utility>
+#include <vector>
+
+#include "capsigh/answer/bind.hpp"
+#include "capsigh/answer/doubt.hpp"
+#include "capsigh/answer/figures.hpp"
+
+namespace capsigh {
+
+struct ReportOptions {
+  bool strict = false;  ///< a caution about a range is an error
+};
+
+struct CitedSource {
+  std::string key;
+  std::string citation;
+};
+
+struct Audit {
+  std::string program = "capsigh";
+  std::string version;
+  std::string recipe_digest;
+  std::string constants_digest;
+  std::vector<std::pair<std::string, std::string>> inputs;
+};
+
+struct Report {
+  std::string title;
+  std::vector<std::pair<std::string, std::string>> about;
+  std::string liquid;
+  Answer answer;
+  std::vector<std::string> gases;  ///< of the headspace
+  bool solved_for_pressure = false;
+  bool solved_for_temperature = false;
+  std::vector<std::pair<std::string, std::string>> targets;  ///< gas and content as asked
+  std::vector<BudgetLine> budget;
+  std::vector<std::string> doubt_not_stated;
+  Findings assumptions;
+  Findings cautions;
+  std::vector<CitedSource> sources;
+  Trace trace;
+  Audit audit;
+};
+
+/// Answers a recipe. `recipe_text` is what the digest identifies. Without a value the findings say
+/// why; they are all the faults that could be seen.
+Outcome<Report> report(const Outcome<Recipe>& recipe, std::string_view recipe_text,
+                       const Library& library, const ReportOptions& options = {});
+
+/// The version of the program.
+std::string_view version();
+
+}  // namespace capsigh

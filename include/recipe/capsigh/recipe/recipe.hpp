@@ -1,0 +1,105 @@
+// A recipe as typed, located quantities. What a recipe leaves out is what it wants to know. Names
+// of gases and liquids stay text here; the answer room knows which exist.
+#pragma once
+
+#include <optional>
+#include <string>
+#include <utility>
+#include <variant>
+#include <vector>
+
+#include "capsigh/document/document.hpp"
+#include "capsigh/quantity/finding.hpp"
+#include "capsigh/quantity/grammar.hpp"
+#include "capsigh/quantity/units.hpp"
+
+namespace capsigh {
+
+/// Text with its place.
+struct LocatedText {
+  std::string text;
+  Place place;
+};
+
+/// A quantity as given: its value, the limit of error or tolerance behind ±, and where it stands. A
+/// key that is present but unreadable has no value; it still counts as present.
+template <class Q>
+struct Given {
+  std::optional<Q> value;
+  std::optional<Difference<Q>> plus_minus;
+  LocatedText source;
+};
+
+/// A pressure as read: absolute or gauge.
+struct GivenPressure {
+  std::variant<std::monostate, Pressure, GaugePressure> value;
+  std::optional<Pressure> plus_minus;
+  LocatedText source;
+
+  [[nodiscard]] bool readable() const { return value.index() != 0; }
+};
+
+/// How a content is expressed. The number behind it is in SI units of that measure.
+enum class ContentMeasure {
+  volumes,               ///< volumes of gas per volume of degassed liquid, 1
+  mass_concentration,    ///< kg/m³ of degassed liquid at 20 °C
+  amount_concentration,  ///< mol/m³ of degassed liquid at 20 °C
+  molality,              ///< mol/kg of degassed liquid
+  mass_fraction,         ///< kg/kg of degassed liquid
+};
+
+/// The content of one gas.
+struct GivenContent {
+  LocatedText gas;
+  ContentMeasure measure = ContentMeasure::volumes;
+  Given<Fraction> amount;  ///< the number in SI units of the measure
+};
+
+/// One line of [gas]: a share of the dry gas, or "rest".
+struct GivenShare {
+  LocatedText name;
+  bool rest = false;
+  Given<Fraction> share;
+};
+
+struct ContactSection {
+  Place place;
+  std::optional<Given<Temperature>> temperature;
+  std::optional<GivenPressure> pressure;
+  std::vector<GivenContent> dissolved;
+  std::optional<Place> dissolved_place;
+  std::optional<Given<Length>> altitude;
+  std::optional<Given<Pressure>> ambient;
+};
+
+struct ContainerSection {
+  Place place;
+  std::optional<Given<Volume>> brimful;
+  std::optional<Given<Volume>> fill;
+  std::optional<Given<Fraction>> closing_air;
+};
+
+struct OpeningSection {
+  Place place;
+  std::optional<Given<Temperature>> temperature;
+};
+
+struct Recipe {
+  std::string file;
+  bool readable = true;  ///< false if some value could not be read; it still counts as given
+  std::string title;
+  std::vector<std::pair<std::string, std::string>> about;  ///< carried into every output
+  std::optional<LocatedText> like;
+  std::vector<GivenShare> gas;
+  std::optional<Place> gas_place;
+  std::optional<ContactSection> contact;
+  std::vector<GivenContent> target;
+  std::optional<ContainerSection> container;
+  std::optional<OpeningSection> opening;
+  std::vector<std::pair<std::string, std::string>> inputs;  ///< as understood: key and text
+};
+
+/// Reads a parsed document; reports every fault of the recipe, not only the first.
+Outcome<Recipe> read_recipe(const Node& document, const std::string& file);
+
+}  // namespace capsigh

@@ -1,0 +1,29 @@
+// Report → string. Renderers compute nothing: every number comes from the answer and goes through
+// the grammar.
+#pragma once
+
+#include <string>
+
+#include "capsigh/answer/report.hpp"
+#include "capsigh/constants/library.hpp"
+
+namespace capsigh {
+
+/// A report for people: 80 columns, no colour.
+std::string text_report(const Report& report, bool with_trace);
+
+/// Reports by the JSON contract: one an object, several an array.
+std::string json_reports(const std::vector<Report>& reports, bool with_trace);
+
+/// Findings as a compiler prints them: file:line:column, the line, and the text underlined.
+std::string text_findings(const Findings& findings);
+
+/// The records whose key or gas the name matches (all, for an empty name), for an auditor.
+std::string text_constants(const Library& library, const std::string& name);
+std::string json_constants(const Library& library, const std::string& name);
+/// Whether a record is called by that name: its key, or a whole part of it such as a gas.
+bool record_matches(const Record& record, const std::string& name);
+/// Whether any record matches.
+bool constants_match(const Library& library, const std::string& name);
+
+}  // namespace capsigh

@@ -1,0 +1,77 @@
+#include "capsigh/answer/case.hpp"
+
+namespace capsigh {
+namespace {
+
+class DoubtList {
+ public:
+  template <class Q>
+  void input(const std::string& name, Uncertain<Q>& input) {
+    const double u = si_value(input.u);
+    if (!(u > 0)) return;
+    list_.push_back({name, &input.z, u, std::string(si_symbol<Difference<Q>>), input.shape, false});
+  }
+
+  template <class Q>
+  void input(const std::string& name, std::optional<Uncertain<Q>>& maybe) {
+    if (maybe) input(name, *maybe);
+  }
+
+  void record(RecordDoubt& doubt) {
+    if (doubt.record == nullptr || !(doubt.u > 0)) return;
+    list_.push_back({std::string(doubt.record->key), &doubt.z, doubt.u * doubt.widening,
+                     doubt.is_absolute ? "SI unit of the record" : "1", Shape::normal, true});
+  }
+
+  std::vector<Doubt> take() { return std::move(list_); }
+
+ private:
+  std::vector<Doubt> list_;
+};
+
+}  // namespace
+
+Shares contact_shares(const Case& c) {
+  double given = 0;
+  bool has_rest = false;
+  for (const auto& line : c.contact.gas) {
+    has_rest = has_rest || line.rest;
+    if (!line.rest) given += line.share.now().value();
+  }
+  // Without a rest the lines add up to 1 within the tolerance of bind; they are scaled to it, so
+  // that a doubt in one line is borne by the others in proportion.
+  const double scale = has_rest ? 1.0 : 1.0 / given;
+  Shares shares(c.medium.size(), Fraction(0.0));
+  for (const auto& line : c.contact.gas) {
+    const double share = line.rest ? 1.0 - given : line.share.now().value() * scale;
+    for (std::size_t i = 0; i < shares.size(); ++i) {
+      shares[i] = shares[i] + line.parts[i] * share;
+    }
+  }
+  return shares;
+}
+
+std::vector<Doubt> each_doubt(Case& c) {
+  DoubtList list;
+  auto& contact = c.contact;
+  list.input("contact.temperature", contact.temperature);
+  list.input("contact.pressure", contact.gauge_pressure);
+  list.input("contact.pressure", contact.absolute_pressure);
+  if (contact.content) {
+    list.input("contact.dissolved." + std::string(c.medium.gases[contact.content->gas].name),
+               contact.content->amount);
+  }
+  list.input("contact.altitude", c.ambient.altitude);
+  list.input("contact.ambient", c.ambient.stated);
+  for (auto& line : contact.gas) list.input("gas." + line.name, line.share);
+  if (c.container) {
+    list.input("container.brimful", c.container->brimful);
+    list.input("container.fill", c.container->fill);
+    list.input("container.closed_at.air", c.container->closing_air);
+  }
+  if (c.opening) list.input("opening.temperature", c.opening->temperature);
+  each_record_doubt(c.medium, [&](RecordDoubt& doubt) { list.record(doubt); });
+  return list.take();
+}
+
+}  // namespace capsigh

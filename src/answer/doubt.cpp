@@ -1,0 +1,148 @@
+#include "capsigh/answer/doubt.hpp"
+
+#include <fmt/format.h>
+
+#include <algorithm>
+#include <cmath>
+#include <map>
+
+#include "capsigh/answer/solve.hpp"
+#include "capsigh/quantity/grammar.hpp"
+
+namespace capsigh {
+namespace {
+
+std::vector<double> flatten(const Answer& answer) {
+  std::vector<double> values;
+  each_figure(answer, [&](const FigurePath&, const auto& figure, const JsonUnit&) {
+    values.push_back(si_value(figure.value));
+  });
+  return values;
+}
+
+// Solves with one doubt moved to z.
+std::optional<std::vector<double>> moved(Case& c, const Doubt& doubt, double z) {
+  *doubt.z = z;
+  const auto result = solve(c);
+  *doubt.z = 0;
+  if (refused(result) != nullptr) return std::nullopt;
+  return flatten(std::get<Answer>(result));
+}
+
+// What one standard uncertainty of a doubt moves every figure by: half the way from z = −1 to +1;
+// one-sided where only one side has an answer.
+std::vector<double> sensitivities(Case& c, const Doubt& doubt, const std::vector<double>& at_best) {
+  const auto up = moved(c, doubt, 1.0);
+  const auto down = moved(c, doubt, -1.0);
+  std::vector<double> change(at_best.size(), 0.0);
+  // A root is found to about 1e-15; smaller differences than this are its noise, not a doubt.
+  constexpr double noise = 1e-12;
+  for (std::size_t i = 0; i < change.size(); ++i) {
+    if (up && down) {
+      change[i] = 0.5 * ((*up)[i] - (*down)[i]);
+    } else if (up) {
+      change[i] = (*up)[i] - at_best[i];
+    } else if (down) {
+      change[i] = at_best[i] - (*down)[i];
+    }
+    if (std::abs(change[i]) <= noise * std::abs(at_best[i])) change[i] = 0;
+  }
+  return change;
+}
+
+bool main_figure(const std::string& path) {
+  return path.ends_with(".volumes") || path.ends_with(".mass_concentration") ||
+         path.ends_with(".pressure_gauge") || path == "condition.temperature" ||
+         path.starts_with("saturation.") || path.ends_with("_loss");
+}
+
+std::string quantity_text(double si, std::string_view unit, Dimension dimension) {
+  return fmt::format("{} {}", significant(in_unit(si, *find_unit(unit, dimension)), 4), unit);
+}
+
+// The conditions a law was used at, for a message.
+std::string conditions_text(const Conditions& c, const ValidityBox& box) {
+  std::string text;
+  if (c.temperature && box.temperature.bounded()) {
+    text += quantity_text(c.temperature->kelvin(), "degC", Dimension::temperature);
+  }
+  if (c.pressure && box.pressure.bounded()) {
+    if (!text.empty()) text += " and ";
+    text += quantity_text(c.pressure->value(), "bar", Dimension::pressure) + " abs";
+  }
+  return text;
+}
+
+void widen(Medium& medium, const Record* record, double factor) {
+  each_record_doubt(medium, [&](RecordDoubt& doubt) {
+    if (doubt.record == record) doubt.widening = factor;
+  });
+}
+
+}  // namespace
+
+std::vector<BudgetLine> propagate(Case& c, Answer& answer) {
+  const auto doubts = each_doubt(c);
+  const auto at_best = flatten(answer);
+  std::vector<std::vector<double>> changes;
+  changes.reserve(doubts.size());
+  for (const auto& doubt : doubts) changes.push_back(sensitivities(c, doubt, at_best));
+  std::vector<BudgetLine> budget;
+  std::size_t slot = 0;
+  each_figure(answer, [&](const FigurePath& path, auto& figure, const JsonUnit& unit) {
+    double variance = 0;
+    for (const auto& change : changes) variance += change[slot] * change[slot];
+    figure.u = from_si<std::decay_t<decltype(figure.u)>>(std::sqrt(variance));
+    const std::string of = path.text();
+    if (figure.asked && variance > 0 && main_figure(of)) {
+      const auto first = static_cast<std::ptrdiff_t>(budget.size());
+      for (std::size_t d = 0; d < doubts.size(); ++d) {
+        const double share = changes[d][slot] * changes[d][slot] / variance;
+        constexpr double negligible = 1e-6;
+        if (share < negligible) continue;
+        budget.push_back({of, doubts[d].name, doubts[d].u, doubts[d].unit, share,
+                          std::abs(changes[d][slot]) / unit.factor, doubts[d].is_record});
+      }
+      std::sort(budget.begin() + first, budget.end(),
+                [](const auto& a, const auto& b) { return a.share > b.share; });
+    }
+    ++slot;
+  });
+  return budget;
+}
+
+Findings judge_ranges(Case& c, const Trace& trace, double widening_per_width) {
+  struct Worst {
+    double widths = 0;
+    Conditions conditions;
+  };
+  std::map<const Record*, Worst> worst;
+  for (const auto& chain : trace.chains) {
+    for (const auto& step : chain.steps) {
+      if (step.record == nullptr) continue;
+      const double widths = widths_outside(step.record->range, step.conditions);
+      if (widths <= 0) continue;
+      auto& entry = worst[step.record];
+      if (widths > entry.widths) entry = {widths, step.conditions};
+    }
+  }
+  Findings cautions;
+  for (const auto& [record, entry] : worst) {
+    const double factor = 1.0 + widening_per_width * entry.widths;
+    widen(c.medium, record, factor);
+    const auto& box = nearest_box(record->range, entry.conditions);
+    Finding f;
+    f.severity = Severity::caution;
+    f.code = "out-of-range";
+    f.message = fmt::format(
+        "{} is used at {}, outside its range of {}; extrapolated, its uncertainty taken {} times",
+        record->key, conditions_text(entry.conditions, box), record->range_text,
+        significant(factor, 3));
+    cautions.push_back(std::move(f));
+  }
+  std::sort(cautions.begin(), cautions.end(),
+            [](const Finding& a, const Finding& b) { return a.message < b.message; });
+  return cautions;
+}
+
+}  // namespace capsigh

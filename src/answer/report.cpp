@@ -1,0 +1,124 @@
+#include "capsigh/answer/report.hpp"
+
+#include <algorithm>
+
+#include "capsigh/answer/solve.hpp"
+
+namespace capsigh {
+namespace {
+
+void append(Findings& to, const Findings& more) { to.insert(to.end(), more.begin(), more.end()); }
+
+void sort_findings(const Binding& binding, Report& report) {
+  for (const auto& note : binding.notes) {
+    auto& list = note.severity == Severity::assumption ? report.assumptions : report.cautions;
+    list.push_back(note);
+  }
+}
+
+// Every source behind the trace and the definitions, each once, in the order of first use.
+std::vector<CitedSource> cited_sources(const Trace& trace, const Binding& binding,
+                                       const Library& library) {
+  std::vector<CitedSource> sources;
+  const auto cite = [&](const Record& record) {
+    const bool known = std::any_of(sources.begin(), sources.end(),
+                                   [&](const CitedSource& s) { return s.key == record.source; });
+    const Source* source = library.source(record.source);
+    if (known || source == nullptr) return;
+    sources.push_back({std::string(source->key), std::string(source->citation)});
+  };
+  for (const auto& chain : trace.chains) {
+    for (const auto& step : chain.steps) {
+      if (step.record != nullptr) cite(*step.record);
+    }
+  }
+  for (const Record* record : binding.also_used) cite(*record);
+  return sources;
+}
+
+// Where in the recipe a refusal is best shown: at the value that asks for the impossible.
+Place place_of(const Recipe& recipe, RefusalCode code) {
+  const auto& contact = recipe.contact;
+  if (!contact) return {recipe.file, 0, 0, 1, ""};
+  const bool by_pressure = code == RefusalCode::boils || code == RefusalCode::pressure_beyond_model;
+  if (by_pressure && contact->pressure) return contact->pressure->source.place;
+  if (code == RefusalCode::container_without_space && recipe.container) {
+    return recipe.container->place;
+  }
+  if (!contact->dissolved.empty()) return contact->dissolved.front().amount.source.place;
+  if (!recipe.target.empty()) return recipe.target.front().amount.source.place;
+  return contact->place;
+}
+
+Finding package_caution() {
+  Finding f;
+  f.severity = Severity::caution;
+  f.code = "package-pressure";
+  f.message =
+      "pressurised packages can burst: compare with the container maker's rating at the "
+      "warmest it will get; local codes and the maker decide, not this figure";
+  return f;
+}
+
+void describe(const Recipe& recipe, const Binding& binding, Report& report) {
+  report.title = recipe.title;
+  report.about = recipe.about;
+  report.liquid = binding.liquid;
+  report.doubt_not_stated = binding.doubt_not_stated;
+  const auto& c = binding.problem;
+  for (std::size_t i = 0; i < c.medium.size(); ++i) {
+    if (c.in_contact[i] != 0) report.gases.emplace_back(c.medium.gases[i].name);
+  }
+  report.solved_for_pressure = c.contact.known == Known::temperature_content;
+  report.solved_for_temperature = c.contact.known == Known::pressure_content;
+  for (const auto& target : recipe.target) {
+    report.targets.emplace_back(target.gas.text, target.amount.source.text);
+  }
+  if (report.targets.empty() && recipe.contact && !recipe.contact->dissolved.empty()) {
+    const auto& content = recipe.contact->dissolved.front();
+    report.targets.emplace_back(content.gas.text, content.amount.source.text);
+  }
+}
+
+}  // namespace
+
+Outcome<Report> report(const Outcome<Recipe>& recipe, std::string_view recipe_text,
+                       const Library& library, const ReportOptions& options) {
+  Findings findings = recipe.findings;
+  if (!recipe) return {{}, findings};
+  auto binding = bind(*recipe, library);
+  append(findings, binding.findings);
+  if (has_error(findings) || !binding) return {{}, findings};
+  Report report;
+  Case& problem = binding.value->problem;
+  const auto solved = solve(problem, &report.trace);
+  if (const auto* no = refused(solved)) {
+    Finding f = explain(*no);
+    f.place = place_of(*recipe, no->code);
+    return {{}, {f}};
+  }
+  report.answer = std::get<Answer>(solved);
+  describe(*recipe, *binding, report);
+  sort_findings(*binding, report);
+  const double widening = library.at("assumed.widening").values[0].value;
+  append(report.cautions, judge_ranges(problem, report.trace, widening));
+  if (options.strict && !report.cautions.empty()) {
+    for (auto& caution : report.cautions) {
+      caution.severity = Severity::error;
+      if (!caution.place) caution.place = Place{recipe->file, 0, 0, 1, ""};
+    }
+    return {{}, report.cautions};
+  }
+  if (problem.container) report.cautions.push_back(package_caution());
+  report.budget = propagate(problem, report.answer);
+  report.sources = cited_sources(report.trace, *binding, library);
+  report.audit.version = version();
+  report.audit.recipe_digest = sha1_digest(recipe_text);
+  report.audit.constants_digest = library.digest();
+  report.audit.inputs = recipe->inputs;
+  return {std::move(report), {}};
+}
+
+std::string_view version() { return CAPSIGH_VERSION; }
+
+}  // namespace capsigh

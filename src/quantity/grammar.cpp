@@ -1,0 +1,394 @@
+#include "capsigh/quantity/grammar.hpp"
+
+#include <fmt/format.h>
+
+#include <algorithm>
+#include <array>
+#include <charconv>
+#include <cmath>
+#include <vector>
+
+#include "capsigh/quantity/finding.hpp"
+
+namespace capsigh {
+namespace {
+
+using enum Dimension;
+
+// Factors are exact by definition: the pound-force per square inch from the international pound
+// (0.45359237 kg), the inch (0.0254 m) and the standard acceleration of free fall (9.80665 m/s²);
+// the degree Fahrenheit from 5/9 K and 459.67 °R; the atmosphere 101325 Pa.
+constexpr double kPsi = 0.45359237 * 9.80665 / (0.0254 * 0.0254);
+constexpr double kFahrenheit = 5.0 / 9.0;
+constexpr double kCelsiusZero = 273.15;
+constexpr double kFahrenheitZero = 459.67 * 5.0 / 9.0;
+
+constexpr auto kUnits = std::to_array<Unit>({
+    {"bar", pressure, 1e5},
+    {"barg", pressure, 1e5, 0, Reference::gauge},
+    {"bara", pressure, 1e5, 0, Reference::absolute},
+    {"mbar", pressure, 1e2},
+    {"hPa", pressure, 1e2},
+    {"kPa", pressure, 1e3},
+    {"MPa", pressure, 1e6},
+    {"Pa", pressure, 1},
+    {"psi", pressure, kPsi},
+    {"psig", pressure, kPsi, 0, Reference::gauge},
+    {"psia", pressure, kPsi, 0, Reference::absolute},
+    {"atm", pressure, 101325},
+    {"degC", temperature, 1, kCelsiusZero},
+    {"°C", temperature, 1, kCelsiusZero},
+    {"degF", temperature, kFahrenheit, kFahrenheitZero},
+    {"°F", temperature, kFahrenheit, kFahrenheitZero},
+    {"K", temperature, 1},
+    {"K", temperature_difference, 1},
+    {"degC", temperature_difference, 1},
+    {"°C", temperature_difference, 1},
+    {"degF", temperature_difference, kFahrenheit},
+    {"°F", temperature_difference, kFahrenheit},
+    {"m3", volume, 1},
+    {"hL", volume, 1e-1},
+    {"L", volume, 1e-3},
+    {"cL", volume, 1e-5},
+    {"mL", volume, 1e-6},
+    {"m", length, 1},
+    {"cm", length, 1e-2},
+    {"mm", length, 1e-3},
+    {"ft", length, 0.3048},
+    {"kg", mass, 1},
+    {"g", mass, 1e-3},
+    {"mg", mass, 1e-6},
+    {"%", fraction, 1e-2},
+    {"vol", gas_volumes, 1},
+    {"g/L", mass_concentration, 1},
+    {"mg/L", mass_concentration, 1e-3},
+    {"ug/L", mass_concentration, 1e-6},
+    {"g/100 mL", mass_concentration, 10},
+    {"mol/L", amount_concentration, 1e3},
+    {"mmol/L", amount_concentration, 1},
+    {"mol/kg", molality, 1},
+    {"mmol/kg", molality, 1e-3},
+    {"% w/w", mass_fraction, 1e-2},
+    {"g/kg", mass_fraction, 1e-3},
+    {"mg/kg", mass_fraction, 1e-6},
+});
+
+constexpr bool is_space(char c) { return c == ' ' || c == '\t'; }
+constexpr bool is_digit(char c) { return c >= '0' && c <= '9'; }
+
+// A position in the text; all reading goes forward through it.
+struct Scanner {
+  std::string_view text;
+  std::size_t at = 0;
+
+  void skip_spaces() {
+    while (at < text.size() && is_space(text[at])) ++at;
+  }
+  [[nodiscard]] bool done() const { return at >= text.size(); }
+  [[nodiscard]] std::string_view rest() const { return text.substr(at); }
+};
+
+std::string join_units(std::span<const Dimension> dimensions) {
+  std::string list;
+  for (const auto& unit : kUnits) {
+    if (std::find(dimensions.begin(), dimensions.end(), unit.dimension) == dimensions.end()) {
+      continue;
+    }
+    if (!list.empty()) list += ", ";
+    list += unit.text;
+  }
+  return list;
+}
+
+std::string join_names(std::span<const Dimension> dimensions) {
+  std::string list;
+  for (const auto d : dimensions) {
+    if (!list.empty()) list += " or ";
+    list += dimension_name(d);
+  }
+  return list;
+}
+
+GrammarFault fault(std::size_t offset, std::size_t length, std::string code, std::string message,
+                   const Wanted& wanted) {
+  return {offset,
+          std::max<std::size_t>(length, 1),
+          std::move(code),
+          std::move(message),
+          fmt::format("a number and a unit: {}", join_units(wanted.dimensions)),
+          std::string(wanted.example)};
+}
+
+// The plus-minus sign at the scanner, in either spelling: its length, or 0.
+std::size_t plus_minus_length(std::string_view rest) {
+  if (rest.starts_with("±")) return std::string_view("±").size();
+  if (rest.starts_with("+/-")) return 3;
+  return 0;
+}
+
+std::variant<double, GrammarFault> read_number(Scanner& in, const Wanted& wanted) {
+  in.skip_spaces();
+  const std::size_t start = in.at;
+  std::string_view rest = in.rest();
+  const bool sign = !rest.empty() && (rest.front() == '+' || rest.front() == '-');
+  const std::string_view digits = sign ? rest.substr(1) : rest;
+  if (digits.empty() || !(is_digit(digits.front()) || digits.front() == '.')) {
+    return fault(start, rest.size(), "number-missing",
+                 rest.empty() ? "there is no number here"
+                              : fmt::format("'{}' does not begin with a number", rest),
+                 wanted);
+  }
+  if (rest.front() == '+') rest.remove_prefix(1);
+  double value = 0;
+  const auto [end, error] = std::from_chars(rest.data(), rest.data() + rest.size(), value);
+  const auto length = static_cast<std::size_t>(end - in.text.data()) - start;
+  if (error == std::errc::result_out_of_range) {
+    return fault(start, length, "number-out-of-range",
+                 fmt::format("'{}' is too large or too small for any real quantity",
+                             in.text.substr(start, length)),
+                 wanted);
+  }
+  if (error != std::errc{}) {
+    return fault(start, rest.size(), "number-missing",
+                 fmt::format("'{}' does not begin with a number", rest), wanted);
+  }
+  in.at = start + length;
+  const bool comma =
+      in.at + 1 < in.text.size() && in.text[in.at] == ',' && is_digit(in.text[in.at + 1]);
+  if (comma) {
+    return fault(start, length + 2, "decimal-comma",
+                 "the decimal sign is a point here, not a comma", wanted);
+  }
+  return value;
+}
+
+// The unit's text as written up to ± or the end, runs of spaces made one.
+std::string read_unit_text(Scanner& in, std::size_t& start, std::size_t& length) {
+  in.skip_spaces();
+  start = in.at;
+  std::string text;
+  while (!in.done() && plus_minus_length(in.rest()) == 0) {
+    const char c = in.text[in.at++];
+    if (is_space(c)) {
+      if (!text.empty() && text.back() != ' ') text += ' ';
+    } else {
+      text += c;
+    }
+  }
+  length = in.at - start;
+  while (!text.empty() && text.back() == ' ') {
+    text.pop_back();
+  }
+  while (length > 0 && is_space(in.text[start + length - 1])) --length;
+  return text;
+}
+
+Reference split_reference(std::string& unit_text) {
+  const std::size_t space = unit_text.rfind(' ');
+  if (space == std::string::npos) return Reference::none;
+  const std::string word = unit_text.substr(space + 1);
+  Reference reference = Reference::none;
+  if (word == "gauge") reference = Reference::gauge;
+  if (word == "abs" || word == "absolute") reference = Reference::absolute;
+  if (reference != Reference::none) unit_text.resize(space);
+  return reference;
+}
+
+const Unit* unit_among(std::string_view text, std::span<const Dimension> dimensions) {
+  for (const auto d : dimensions) {
+    if (const Unit* unit = find_unit(text, d)) return unit;
+  }
+  return nullptr;
+}
+
+GrammarFault unit_fault(const std::string& unit_text, std::size_t start, std::size_t length,
+                        const Wanted& wanted) {
+  if (unit_text.empty()) {
+    return fault(start, 1, "unit-missing", "the number has no unit", wanted);
+  }
+  const auto* elsewhere = std::find_if(kUnits.begin(), kUnits.end(),
+                                       [&](const Unit& u) { return u.text == unit_text; });
+  if (elsewhere != kUnits.end()) {
+    return fault(start, length, "unit-wrong-kind",
+                 fmt::format("'{}' is a unit of {}, not of {}", unit_text,
+                             dimension_name(elsewhere->dimension), join_names(wanted.dimensions)),
+                 wanted);
+  }
+  std::vector<std::string> names;
+  for (const auto& unit : kUnits) {
+    if (unit_among(unit.text, wanted.dimensions) != nullptr) names.emplace_back(unit.text);
+  }
+  const auto near = nearest_name(unit_text, names);
+  return fault(start, length, "unit-unknown",
+               near
+                   ? fmt::format("'{}' is no unit known here; did you mean '{}'?", unit_text, *near)
+                   : fmt::format("'{}' is no unit known here", unit_text),
+               wanted);
+}
+
+// Rules of a pressure's reference; nullopt when all is well.
+std::optional<GrammarFault> reference_fault(const ParsedQuantity& q, std::size_t start,
+                                            std::size_t length, const Wanted& wanted) {
+  if (q.dimension != pressure) {
+    if (q.reference == Reference::none) return std::nullopt;
+    return fault(start, length, "reference-misplaced", "only a pressure is gauge or abs", wanted);
+  }
+  if (wanted.absolute_by_nature) {
+    if (q.reference != Reference::gauge) return std::nullopt;
+    return fault(start, length, "reference-misplaced",
+                 "this pressure is absolute by nature and cannot be a gauge reading", wanted);
+  }
+  if (q.reference != Reference::none) return std::nullopt;
+  auto f = fault(start, length, "pressure-reference-missing",
+                 "the pressure does not say whether it is a gauge reading or absolute", wanted);
+  f.expected = "'gauge' (what a gauge shows, 0 in the open) or 'abs' behind the unit";
+  return f;
+}
+
+std::variant<double, GrammarFault> read_plus_minus(Scanner& in, Dimension of,
+                                                   const Wanted& wanted) {
+  const auto number = read_number(in, wanted);
+  if (const auto* bad = std::get_if<GrammarFault>(&number)) return *bad;
+  std::size_t start = 0;
+  std::size_t length = 0;
+  std::string text = read_unit_text(in, start, length);
+  split_reference(text);
+  const Dimension difference = of == temperature ? temperature_difference : of;
+  const Unit* unit = find_unit(text, difference);
+  if (unit == nullptr) {
+    const std::array only{difference};
+    Wanted narrowed = wanted;
+    narrowed.dimensions = only;
+    return unit_fault(text, start, length, narrowed);
+  }
+  if (!in.done()) {
+    return fault(in.at, in.text.size() - in.at, "text-left-over",
+                 fmt::format("'{}' was not expected here", in.rest()), wanted);
+  }
+  const double value = std::get<double>(number) * unit->factor;
+  if (!(value > 0)) {
+    return fault(start, length, "plus-minus-not-positive",
+                 "what stands behind ± must be greater than zero", wanted);
+  }
+  return value;
+}
+
+}  // namespace
+
+std::string_view dimension_name(Dimension d) {
+  switch (d) {
+    case pressure: return "pressure";
+    case temperature: return "temperature";
+    case temperature_difference: return "temperature difference";
+    case volume: return "volume";
+    case length: return "length";
+    case mass: return "mass";
+    case fraction: return "fraction";
+    case gas_volumes: return "volumes of gas";
+    case mass_concentration: return "mass concentration";
+    case amount_concentration: return "amount concentration";
+    case molality: return "molality";
+    case mass_fraction: return "mass fraction";
+  }
+  return "quantity";
+}
+
+std::span<const Unit> unit_table() { return kUnits; }
+
+const Unit* find_unit(std::string_view text, Dimension dimension) {
+  const auto* it = std::find_if(kUnits.begin(), kUnits.end(), [&](const Unit& u) {
+    return u.dimension == dimension && u.text == text;
+  });
+  return it == kUnits.end() ? nullptr : it;
+}
+
+std::variant<ParsedQuantity, GrammarFault> parse_quantity(std::string_view text,
+                                                          const Wanted& wanted) {
+  Scanner in{text};
+  const auto number = read_number(in, wanted);
+  if (const auto* bad = std::get_if<GrammarFault>(&number)) return *bad;
+  std::size_t start = 0;
+  std::size_t length = 0;
+  std::string unit_text = read_unit_text(in, start, length);
+  ParsedQuantity q;
+  q.reference = split_reference(unit_text);
+  const Unit* unit = unit_among(unit_text, wanted.dimensions);
+  if (unit == nullptr) return unit_fault(unit_text, start, length, wanted);
+  q.dimension = unit->dimension;
+  if (unit->reference != Reference::none) q.reference = unit->reference;
+  q.value = std::get<double>(number) * unit->factor + unit->offset;
+  if (!std::isfinite(q.value)) {
+    return fault(0, text.size(), "number-out-of-range", "the quantity is too large", wanted);
+  }
+  if (auto bad = reference_fault(q, start, length, wanted)) return *bad;
+  if (const std::size_t sign = plus_minus_length(in.rest()); sign > 0) {
+    in.at += sign;
+    const auto tolerance = read_plus_minus(in, q.dimension, wanted);
+    if (const auto* bad = std::get_if<GrammarFault>(&tolerance)) return *bad;
+    q.plus_minus = std::get<double>(tolerance);
+  }
+  return q;
+}
+
+double in_unit(double si, const Unit& unit) { return (si - unit.offset) / unit.factor; }
+double difference_in_unit(double si, const Unit& unit) { return si / unit.factor; }
+
+namespace {
+
+// "-0.00" says no more than "0.00".
+std::string without_negative_zero(std::string text) {
+  const bool zero = text.find_first_of("123456789") == std::string::npos;
+  if (zero && text.starts_with('-')) text.erase(0, 1);
+  return text;
+}
+
+int decimals_for(double magnitude, int digits) {
+  const int exponent = static_cast<int>(std::floor(std::log10(magnitude)));
+  return digits - 1 - exponent;
+}
+
+std::string fixed(double value, int decimals) {
+  if (decimals >= 0) return without_negative_zero(fmt::format("{:.{}f}", value, decimals));
+  const double step = std::pow(10.0, -decimals);
+  return without_negative_zero(fmt::format("{:.0f}", std::round(value / step) * step));
+}
+
+constexpr int kUncertaintyDigits = 2;  // JCGM 100, 7.2.6: at most two significant digits
+constexpr int kMachineDigits = 9;
+
+}  // namespace
+
+Rounded rounded(double value, double expanded_uncertainty) {
+  constexpr int digits_without_doubt = 4;
+  if (!(expanded_uncertainty > 0)) return {significant(value, digits_without_doubt), ""};
+  int decimals = decimals_for(expanded_uncertainty, kUncertaintyDigits);
+  // 0.0996 rounds to 0.10: one decimal fewer keeps two significant digits.
+  const double at_decimals =
+      std::round(expanded_uncertainty * std::pow(10.0, decimals)) / std::pow(10.0, decimals);
+  decimals = decimals_for(at_decimals * (1 + 1e-12), kUncertaintyDigits);
+  return {fixed(value, decimals), fixed(expanded_uncertainty, decimals)};
+}
+
+std::string significant(double value, int digits) {
+  if (value == 0) return fixed(0, digits - 1);
+  const double magnitude = std::abs(value);
+  constexpr double small = 1e-4;
+  if (magnitude < small) return fmt::format("{:.{}e}", value, digits - 1);
+  int decimals = decimals_for(magnitude, digits);
+  const double at_decimals =
+      std::round(magnitude * std::pow(10.0, decimals)) / std::pow(10.0, decimals);
+  decimals = decimals_for(at_decimals * (1 + 1e-12), digits);
+  return fixed(value, decimals);
+}
+
+std::string shortest(double value) { return fmt::format("{}", value == 0 ? 0.0 : value); }
+
+double for_machines(double value) {
+  if (value == 0) return 0;
+  const std::string text = fmt::format("{:.{}e}", value, kMachineDigits - 1);
+  double kept = 0;
+  std::from_chars(text.data(), text.data() + text.size(), kept);
+  return kept;
+}
+
+}  // namespace capsigh

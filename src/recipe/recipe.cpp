@@ -1,0 +1,147 @@
+#include "capsigh/recipe/recipe.hpp"
+
+#include <fmt/format.h>
+
+#include "section.hpp"
+
+namespace capsigh {
+namespace {
+
+using recipe_detail::Section;
+
+// The table behind a section's key; a complaint if it is something else.
+const Node* table(Section& top, const std::string& name) {
+  const Member* member = top.take(name);
+  if (member == nullptr) return nullptr;
+  if (member->value.kind == Node::Kind::table) return &member->value;
+  top.complain(member->value.place, "not-a-section",
+               fmt::format("'{}' is {}, not a section", name, kind_name(member->value.kind)),
+               fmt::format("[{}] and its keys below", name), fmt::format("[{}]", name));
+  return nullptr;
+}
+
+class Reader {
+ public:
+  Reader(const Node& document, const std::string& file) : document_(document) {
+    recipe_.file = file;
+  }
+
+  Outcome<Recipe> read() {
+    Section top(document_, "", recipe_, findings_);
+    if (const auto title = top.text("title", "Sparkling water")) recipe_.title = title->text;
+    read_about(top);
+    read_liquid(top);
+    read_gas(top);
+    read_contact(top);
+    read_target(top);
+    read_container(top);
+    read_opening(top);
+    top.finish();
+    recipe_.readable = !has_error(findings_);
+    return {std::move(recipe_), std::move(findings_)};
+  }
+
+ private:
+  Section section(const Node& node, const std::string& name) {
+    return {node, name, recipe_, findings_};
+  }
+
+  void read_about(Section& top) {
+    if (const Node* node = table(top, "about")) {
+      recipe_.about = section(*node, "about").free_text();
+    }
+  }
+
+  void read_liquid(Section& top) {
+    const Node* node = table(top, "liquid");
+    if (node == nullptr) return;
+    Section s = section(*node, "liquid");
+    recipe_.like = s.text("like", "water");
+    s.finish();
+  }
+
+  void read_gas(Section& top) {
+    const Node* node = table(top, "gas");
+    if (node == nullptr) return;
+    recipe_.gas_place = node->place;
+    recipe_.gas = section(*node, "gas").shares();
+  }
+
+  void read_contact(Section& top) {
+    const Node* node = table(top, "contact");
+    if (node == nullptr) return;
+    Section s = section(*node, "contact");
+    ContactSection contact;
+    contact.place = node->place;
+    contact.temperature = s.temperature("temperature", "4 degC");
+    contact.pressure = s.pressure("pressure", "2.3 bar gauge");
+    if (const Member* member = s.take("dissolved")) {
+      contact.dissolved_place = member->key_place;
+      if (member->value.kind == Node::Kind::table) {
+        contact.dissolved = section(member->value, "contact.dissolved").contents();
+      } else {
+        s.complain(member->value.place, "not-a-section",
+                   fmt::format("'contact.dissolved' is {}; it must name the gas",
+                               kind_name(member->value.kind)),
+                   "a { } group of gases and contents", "dissolved = { CO2 = \"3.7 vol\" }");
+      }
+    }
+    contact.altitude = s.length("altitude", "350 m");
+    contact.ambient = s.absolute_pressure("ambient", "978 hPa");
+    s.finish();
+    recipe_.contact = std::move(contact);
+  }
+
+  void read_target(Section& top) {
+    const Node* node = table(top, "target");
+    if (node == nullptr) return;
+    recipe_.target = section(*node, "target").contents();
+  }
+
+  void read_container(Section& top) {
+    const Node* node = table(top, "container");
+    if (node == nullptr) return;
+    Section s = section(*node, "container");
+    ContainerSection container;
+    container.place = node->place;
+    container.brimful = s.volume("brimful", "355 mL");
+    container.fill = s.volume("fill", "330 mL");
+    if (const Member* member = s.take("closed_at")) {
+      if (member->value.kind == Node::Kind::table) {
+        Section closed = section(member->value, "container.closed_at");
+        container.closing_air = closed.share("air", "30 %");
+        closed.finish();
+      } else {
+        s.complain(member->value.place, "not-a-section",
+                   fmt::format("'container.closed_at' is {}, not a {{ }} group",
+                               kind_name(member->value.kind)),
+                   "what the package is closed at", "closed_at = { air = \"30 %\" }");
+      }
+    }
+    s.finish();
+    recipe_.container = std::move(container);
+  }
+
+  void read_opening(Section& top) {
+    const Node* node = table(top, "opening");
+    if (node == nullptr) return;
+    Section s = section(*node, "opening");
+    OpeningSection opening;
+    opening.place = node->place;
+    opening.temperature = s.temperature("temperature", "8 degC");
+    s.finish();
+    recipe_.opening = std::move(opening);
+  }
+
+  const Node& document_;
+  Recipe recipe_;
+  Findings findings_;
+};
+
+}  // namespace
+
+Outcome<Recipe> read_recipe(const Node& document, const std::string& file) {
+  return Reader(document, file).read();
+}
+
+}  // namespace capsigh

@@ -1,0 +1,224 @@
+#include "section.hpp"
+
+#include <fmt/format.h>
+
+#include <algorithm>
+#include <array>
+
+namespace capsigh::recipe_detail {
+namespace {
+
+constexpr std::array kContentDimensions{Dimension::gas_volumes, Dimension::mass_concentration,
+                                        Dimension::amount_concentration, Dimension::molality,
+                                        Dimension::mass_fraction};
+
+ContentMeasure measure_of(Dimension dimension) {
+  switch (dimension) {
+    case Dimension::mass_concentration: return ContentMeasure::mass_concentration;
+    case Dimension::amount_concentration: return ContentMeasure::amount_concentration;
+    case Dimension::molality: return ContentMeasure::molality;
+    case Dimension::mass_fraction: return ContentMeasure::mass_fraction;
+    default: return ContentMeasure::volumes;
+  }
+}
+
+}  // namespace
+
+std::string Section::full_key(const std::string& key) const {
+  return name_.empty() ? key : name_ + "." + key;
+}
+
+void Section::complain(const Place& place, std::string code, std::string message,
+                       std::string expected, std::string example) {
+  Finding f;
+  f.code = std::move(code);
+  f.message = std::move(message);
+  f.expected = std::move(expected);
+  f.example = std::move(example);
+  f.place = place;
+  findings_.push_back(std::move(f));
+}
+
+const Member* Section::take(const std::string& key) {
+  known_.push_back(key);
+  return table_.find(key);
+}
+
+void Section::finish() {
+  for (const auto& member : table_.members) {
+    if (std::find(known_.begin(), known_.end(), member.key) != known_.end()) continue;
+    const auto near = nearest_name(member.key, known_);
+    const std::string where = name_.empty() ? "a recipe" : fmt::format("[{}]", name_);
+    complain(member.key_place, "unknown-key",
+             near ? fmt::format("{} has no '{}'; did you mean '{}'?", where, member.key, *near)
+                  : fmt::format("{} has no '{}'", where, member.key),
+             fmt::format("{}", fmt::join(known_, ", ")), "");
+  }
+}
+
+std::optional<ParsedQuantity> Section::quantity(const Member& member,
+                                                std::span<const Dimension> dimensions,
+                                                std::string_view example, bool absolute_by_nature,
+                                                Sign sign) {
+  const Node& node = member.value;
+  const std::string shown = fmt::format("{} = \"{}\"", member.key, example);
+  if (node.kind != Node::Kind::text) {
+    complain(node.place, "not-a-quantity",
+             fmt::format("'{}' is {}, not a quantity", full_key(member.key), kind_name(node.kind)),
+             "a text with number and unit", shown);
+    return std::nullopt;
+  }
+  const auto parsed = parse_quantity(
+      node.text,
+      {.dimensions = dimensions, .absolute_by_nature = absolute_by_nature, .example = shown});
+  if (const auto* fault = std::get_if<GrammarFault>(&parsed)) {
+    complain(place_inside(node, fault->offset, fault->length), fault->code,
+             fmt::format("'{}': {}", full_key(member.key), fault->message), fault->expected,
+             fault->example);
+    return std::nullopt;
+  }
+  const auto& q = std::get<ParsedQuantity>(parsed);
+  const bool bad =
+      (sign == Sign::positive && !(q.value > 0)) || (sign == Sign::not_negative && q.value < 0);
+  if (bad) {
+    complain(node.place, "impossible-value",
+             fmt::format("'{}' cannot be \"{}\"", full_key(member.key), node.text),
+             sign == Sign::positive ? "a value above zero (above 0 K for a temperature)"
+                                    : "zero or more",
+             shown);
+    return std::nullopt;
+  }
+  recipe_.inputs.emplace_back(full_key(member.key), node.text);
+  return q;
+}
+
+template <class Q>
+Given<Q> Section::given(const Member& member, Dimension dimension, std::string_view example,
+                        bool absolute_by_nature, Sign sign) {
+  Given<Q> g;
+  g.source = {member.value.text, member.value.place};
+  const std::array only{dimension};
+  if (const auto q = quantity(member, only, example, absolute_by_nature, sign)) {
+    g.value = from_si<Q>(q->value);
+    if (q->plus_minus) g.plus_minus = from_si<Difference<Q>>(*q->plus_minus);
+  }
+  return g;
+}
+
+std::optional<Given<Temperature>> Section::temperature(const std::string& key,
+                                                       std::string_view example) {
+  const Member* member = take(key);
+  if (member == nullptr) return std::nullopt;
+  return given<Temperature>(*member, Dimension::temperature, example, false, Sign::positive);
+}
+
+std::optional<Given<Pressure>> Section::absolute_pressure(const std::string& key,
+                                                          std::string_view example) {
+  const Member* member = take(key);
+  if (member == nullptr) return std::nullopt;
+  return given<Pressure>(*member, Dimension::pressure, example, true, Sign::positive);
+}
+
+std::optional<Given<Volume>> Section::volume(const std::string& key, std::string_view example) {
+  const Member* member = take(key);
+  if (member == nullptr) return std::nullopt;
+  return given<Volume>(*member, Dimension::volume, example, false, Sign::positive);
+}
+
+std::optional<Given<Length>> Section::length(const std::string& key, std::string_view example) {
+  const Member* member = take(key);
+  if (member == nullptr) return std::nullopt;
+  return given<Length>(*member, Dimension::length, example, false, Sign::any);
+}
+
+std::optional<Given<Fraction>> Section::share(const std::string& key, std::string_view example) {
+  const Member* member = take(key);
+  if (member == nullptr) return std::nullopt;
+  auto g = given<Fraction>(*member, Dimension::fraction, example, false, Sign::not_negative);
+  if (g.value && g.value->value() > 1) {
+    complain(member->value.place, "impossible-value",
+             fmt::format("'{}' is more than 100 %", full_key(key)), "0 to 100 %",
+             fmt::format("{} = \"{}\"", key, example));
+    g.value.reset();
+  }
+  return g;
+}
+
+std::optional<GivenPressure> Section::pressure(const std::string& key, std::string_view example) {
+  const Member* member = take(key);
+  if (member == nullptr) return std::nullopt;
+  GivenPressure g;
+  g.source = {member->value.text, member->value.place};
+  constexpr std::array only{Dimension::pressure};
+  const auto q = quantity(*member, only, example, false, Sign::any);
+  if (!q) return g;
+  if (q->plus_minus) g.plus_minus = from_si<Pressure>(*q->plus_minus);
+  if (q->reference == Reference::gauge) {
+    g.value = from_si<GaugePressure>(q->value);
+  } else if (q->value > 0) {
+    g.value = from_si<Pressure>(q->value);
+  } else {
+    complain(member->value.place, "impossible-value",
+             fmt::format("'{}' cannot be \"{}\"", full_key(key), member->value.text),
+             "an absolute pressure above zero", fmt::format("{} = \"{}\"", key, example));
+  }
+  return g;
+}
+
+std::optional<LocatedText> Section::text(const std::string& key, std::string_view example) {
+  const Member* member = take(key);
+  if (member == nullptr) return std::nullopt;
+  if (member->value.kind != Node::Kind::text) {
+    complain(member->value.place, "not-a-text",
+             fmt::format("'{}' is {}, not a text", full_key(key), kind_name(member->value.kind)),
+             "a text in quotes", fmt::format("{} = \"{}\"", key, example));
+    return std::nullopt;
+  }
+  recipe_.inputs.emplace_back(full_key(key), member->value.text);
+  return LocatedText{member->value.text, member->value.place};
+}
+
+GivenContent Section::content(const Member& member) {
+  GivenContent c;
+  c.gas = {member.key, member.key_place};
+  c.amount.source = {member.value.text, member.value.place};
+  if (const auto q = quantity(member, kContentDimensions, "3.7 vol", false, Sign::not_negative)) {
+    c.measure = measure_of(q->dimension);
+    c.amount.value = Fraction(q->value);
+    if (q->plus_minus) c.amount.plus_minus = Fraction(*q->plus_minus);
+  }
+  return c;
+}
+
+std::vector<GivenContent> Section::contents() {
+  std::vector<GivenContent> all;
+  for (const auto& member : table_.members) all.push_back(content(member));
+  return all;
+}
+
+std::vector<GivenShare> Section::shares() {
+  std::vector<GivenShare> all;
+  for (const auto& member : table_.members) {
+    GivenShare s;
+    s.name = {member.key, member.key_place};
+    if (member.value.kind == Node::Kind::text && member.value.text == "rest") {
+      s.rest = true;
+      s.share.source = {member.value.text, member.value.place};
+      recipe_.inputs.emplace_back(full_key(member.key), member.value.text);
+    } else if (auto g = share(member.key, "99.9 %")) {
+      s.share = *g;
+    }
+    all.push_back(std::move(s));
+  }
+  return all;
+}
+
+std::vector<std::pair<std::string, std::string>> Section::free_text() {
+  std::vector<std::pair<std::string, std::string>> all;
+  for (const auto& member : table_.members) {
+    if (const auto t = text(member.key, "QB-017 rev C")) all.emplace_back(member.key, t->text);
+  }
+  return all;
+}
+
+}  // namespace capsigh::recipe_detail

@@ -1,0 +1,61 @@
+// Reading the keys of one section: what is asked for is known, what remains is an error.
+#pragma once
+
+#include <functional>
+#include <span>
+#include <string>
+#include <vector>
+
+#include "capsigh/recipe/recipe.hpp"
+
+namespace capsigh::recipe_detail {
+
+/// What is physically possible for a quantity of a key, beyond its unit.
+enum class Sign { any, positive, not_negative };
+
+/// One section while it is read. Every take() makes a key known; finish() reports the rest.
+class Section {
+ public:
+  Section(const Node& table, std::string name, Recipe& recipe, Findings& findings)
+      : table_(table), name_(std::move(name)), recipe_(recipe), findings_(findings) {}
+
+  const Member* take(const std::string& key);
+  void finish();
+
+  std::optional<Given<Temperature>> temperature(const std::string& key, std::string_view example);
+  std::optional<GivenPressure> pressure(const std::string& key, std::string_view example);
+  std::optional<Given<Pressure>> absolute_pressure(const std::string& key,
+                                                   std::string_view example);
+  std::optional<Given<Volume>> volume(const std::string& key, std::string_view example);
+  std::optional<Given<Length>> length(const std::string& key, std::string_view example);
+  std::optional<Given<Fraction>> share(const std::string& key, std::string_view example);
+  std::optional<LocatedText> text(const std::string& key, std::string_view example);
+  /// Every key of this section as a content of the gas it names.
+  std::vector<GivenContent> contents();
+  /// Every key of this section as a share of the gas it names.
+  std::vector<GivenShare> shares();
+  /// Every key of this section as free text.
+  std::vector<std::pair<std::string, std::string>> free_text();
+
+  void complain(const Place& place, std::string code, std::string message, std::string expected,
+                std::string example);
+
+ private:
+  std::optional<ParsedQuantity> quantity(const Member& member,
+                                         std::span<const Dimension> dimensions,
+                                         std::string_view example, bool absolute_by_nature,
+                                         Sign sign);
+  template <class Q>
+  Given<Q> given(const Member& member, Dimension dimension, std::string_view example,
+                 bool absolute_by_nature, Sign sign);
+  GivenContent content(const Member& member);
+  [[nodiscard]] std::string full_key(const std::string& key) const;
+
+  const Node& table_;
+  std::string name_;
+  Recipe& recipe_;
+  Findings& findings_;
+  std::vector<std::string> known_;
+};
+
+}  // namespace capsigh::recipe_detail

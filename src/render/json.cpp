@@ -1,0 +1,160 @@
+#include <algorithm>
+#include <cctype>
+#include <nlohmann/json.hpp>
+
+#include "capsigh/quantity/grammar.hpp"
+#include "capsigh/render/render.hpp"
+
+namespace capsigh {
+namespace {
+
+using Json = nlohmann::ordered_json;
+
+bool is_index(std::string_view part) {
+  return !part.empty() && std::isdigit(static_cast<unsigned char>(part.front())) != 0 &&
+         part.size() == 1;
+}
+
+// The object a path leads to, made on the way; a digit is a place in an array.
+Json& descend(Json& root, const FigurePath& path) {
+  Json* at = &root;
+  for (const auto part : path) {
+    if (is_index(part)) {
+      const auto index = static_cast<std::size_t>(part.front() - '0');
+      if (at->is_null()) *at = Json::array();
+      while (at->size() <= index) at->push_back(Json());
+      at = &(*at)[index];
+    } else {
+      at = &(*at)[std::string(part)];
+    }
+  }
+  return *at;
+}
+
+template <class Q>
+Json quantity(const Figure<Q>& figure, const JsonUnit& unit) {
+  const Unit in{unit.ucum, Dimension::fraction, unit.factor, unit.offset, Reference::none};
+  Json q;
+  q["value"] = for_machines(in_unit(si_value(figure.value), in));
+  q["unit"] = unit.ucum;
+  const double u = difference_in_unit(si_value(figure.u), in);
+  if (u > 0) q["u"] = for_machines(u);
+  return q;
+}
+
+Json findings(const Findings& list) {
+  Json out = Json::array();
+  for (const auto& f : list) out.push_back({{"code", f.code}, {"message", f.message}});
+  return out;
+}
+
+Json budget(const std::vector<BudgetLine>& lines) {
+  Json out = Json::array();
+  for (const auto& line : lines) {
+    out.push_back({{"of", line.of},
+                   {"input", line.input},
+                   {"kind", line.is_record ? "record" : "input"},
+                   {"u", {{"value", for_machines(line.u)}, {"unit", line.u_unit}}},
+                   {"share", for_machines(line.share)},
+                   {"contribution", for_machines(line.contribution)}});
+  }
+  return out;
+}
+
+Json value_of(const TraceValue& v) {
+  return {{"symbol", v.symbol}, {"value", for_machines(v.value)}, {"unit", v.unit}};
+}
+
+Json trace(const Trace& trace) {
+  Json out = Json::array();
+  for (const auto& chain : trace.chains) {
+    Json steps = Json::array();
+    for (const auto& step : chain.steps) {
+      Json inputs = Json::array();
+      for (const auto& in : step.inputs) inputs.push_back(value_of(in));
+      Json j{{"law", step.law}, {"equation", step.equation}, {"inputs", inputs}};
+      j["result"] = value_of(step.result);
+      if (step.record != nullptr) {
+        j["record"] = step.record->key;
+        j["source"] = step.record->source;
+      }
+      steps.push_back(std::move(j));
+    }
+    out.push_back({{"figure", chain.figure}, {"steps", steps}});
+  }
+  return out;
+}
+
+Json pairs(const std::vector<std::pair<std::string, std::string>>& list) {
+  Json out = Json::array();
+  for (const auto& [key, text] : list) out.push_back({{"key", key}, {"text", text}});
+  return out;
+}
+
+Json one(const Report& report, bool with_trace) {
+  Json j;
+  j["title"] = report.title;
+  for (const auto& [key, text] : report.about) j["about"][key] = text;
+  each_figure(report.answer, [&](const FigurePath& path, const auto& figure, const JsonUnit& unit) {
+    if (figure.asked) descend(j, path) = quantity(figure, unit);
+  });
+  j["budget"] = budget(report.budget);
+  j["doubt_not_stated"] = report.doubt_not_stated;
+  j["cautions"] = findings(report.cautions);
+  j["assumptions"] = findings(report.assumptions);
+  j["sources"] = Json::array();
+  for (const auto& s : report.sources) {
+    j["sources"].push_back({{"key", s.key}, {"citation", s.citation}});
+  }
+  if (with_trace) j["trace"] = trace(report.trace);
+  j["audit"] = {{"program", report.audit.program},
+                {"version", report.audit.version},
+                {"recipe_digest", report.audit.recipe_digest},
+                {"constants_digest", report.audit.constants_digest},
+                {"inputs", pairs(report.audit.inputs)}};
+  return j;
+}
+
+Json record_json(const Record& r, const Library& library) {
+  Json j{{"key", r.key}, {"form", r.form}, {"definition", r.definition}, {"unit", r.unit}};
+  j["values"] = Json::array();
+  for (std::size_t i = 0; i < r.values.size(); ++i) {
+    j["values"].push_back(
+        {{"symbol", r.symbols[i]}, {"digits", r.values[i].digits}, {"value", r.values[i].value}});
+  }
+  if (!r.reference.empty()) j["reference"] = r.reference;
+  if (!r.scale.empty()) j["scale"] = r.scale;
+  j["range"] = r.range_text;
+  j["uncertainty"] = r.uncertainty.printed;
+  if (!r.uncertainty.basis.empty()) j["uncertainty_basis"] = r.uncertainty.basis;
+  j["source"] = {{"key", r.source}, {"citation", library.source(r.source)->citation}};
+  j["locator"] = r.locator;
+  j["origin"] = r.origin;
+  if (!r.note.empty()) j["note"] = r.note;
+  if (!r.parts.empty()) j["parts"] = std::vector<std::string>(r.parts.begin(), r.parts.end());
+  j["assumed"] = r.assumed;
+  return j;
+}
+
+constexpr int kIndent = 2;
+
+}  // namespace
+
+std::string json_reports(const std::vector<Report>& reports, bool with_trace) {
+  if (reports.size() == 1) return one(reports.front(), with_trace).dump(kIndent) + "\n";
+  Json all = Json::array();
+  for (const auto& report : reports) all.push_back(one(report, with_trace));
+  return all.dump(kIndent) + "\n";
+}
+
+std::string json_constants(const Library& library, const std::string& name) {
+  Json j;
+  j["constants_digest"] = library.digest();
+  j["records"] = Json::array();
+  for (const auto& record : library.records()) {
+    if (record_matches(record, name)) j["records"].push_back(record_json(record, library));
+  }
+  return j.dump(kIndent) + "\n";
+}
+
+}  // namespace capsigh

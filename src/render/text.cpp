@@ -1,0 +1,212 @@
+#include <fmt/format.h>
+
+#include <algorithm>
+
+#include "capsigh/quantity/grammar.hpp"
+#include "capsigh/render/render.hpp"
+#include "wrap.hpp"
+
+namespace capsigh {
+namespace {
+
+using render_detail::padded;
+using render_detail::wrapped;
+
+constexpr std::size_t kLabel = 30;
+constexpr double kCoverage = 2;  // U = k u, k = 2 (JCGM 100, 6.2)
+
+const Unit& unit(std::string_view name, Dimension dimension) { return *find_unit(name, dimension); }
+
+// "1.58 ± 0.04 bar gauge"
+template <class Q>
+std::string shown(const Figure<Q>& figure, const Unit& in, std::string_view suffix = "") {
+  const double value = in_unit(si_value(figure.value), in);
+  const double expanded = kCoverage * difference_in_unit(si_value(figure.u), in);
+  const auto [number, plus_minus] = rounded(value, expanded);
+  return fmt::format("{}{}{} {}{}", number, plus_minus.empty() ? "" : " ± ", plus_minus, in.text,
+                     suffix);
+}
+
+class TextReport {
+ public:
+  explicit TextReport(const Report& report) : r_(report), a_(report.answer) {}
+
+  std::string write(bool with_trace) {
+    heading();
+    condition();
+    saturation();
+    container();
+    opening();
+    if (with_trace) trace();
+    notes();
+    sources();
+    audit();
+    return std::move(out_);
+  }
+
+ private:
+  void line(std::string_view label, const std::string& value, const std::string& more = "") {
+    out_ += "  " + padded(label, kLabel) + padded(value, more.empty() ? 0 : 24) +
+            (more.empty() ? "" : "  " + more) + "\n";
+  }
+
+  void section(std::string_view name) { out_ += fmt::format("\n{}\n", name); }
+
+  void heading() {
+    out_ += r_.title.empty() ? "Untitled recipe\n" : r_.title + "\n";
+    for (const auto& [key, text] : r_.about) out_ += wrapped("  " + key + ": ", text);
+    out_ += wrapped("  ", fmt::format("{} under {}. Figures are value ± U, expanded uncertainty, "
+                                      "k = 2. A content is per litre of degassed liquid at 20 °C; "
+                                      "vol is real gas at 0 °C and 1 atm.",
+                                      r_.liquid, fmt::format("{}", fmt::join(r_.gases, ", "))));
+  }
+
+  void condition() {
+    section("Where liquid and gas meet");
+    const auto& bar = unit("bar", Dimension::pressure);
+    line(r_.solved_for_temperature ? "Temperature needed" : "Temperature",
+         shown(a_.temperature, unit("°C", Dimension::temperature)));
+    line(r_.solved_for_pressure ? "Pressure needed" : "Pressure",
+         shown(a_.pressure_gauge, bar, " gauge"), shown(a_.pressure_absolute, bar, " abs"));
+    line("Ambient pressure", shown(a_.ambient, unit("hPa", Dimension::pressure)));
+    for (const auto& g : a_.gases) gas(g);
+  }
+
+  // Gases that are there in traces are read in mg/L; volumes would be a row of zeros.
+  void gas(const GasFigures& g) {
+    constexpr double trace = 0.1;
+    const std::string label = fmt::format("Dissolved {}", g.gas);
+    if (g.mass_concentration.value.value() < trace) {
+      line(label, shown(g.mass_concentration, unit("mg/L", Dimension::mass_concentration)));
+      return;
+    }
+    line(label, shown(g.volumes, unit("vol", Dimension::gas_volumes)),
+         shown(g.mass_concentration, unit("g/L", Dimension::mass_concentration)));
+  }
+
+  void saturation() {
+    if (a_.saturation.empty()) return;
+    section("Saturation: what the wanted content needs");
+    const auto& bar = unit("bar", Dimension::pressure);
+    for (std::size_t i = 0; i < a_.saturation.size(); ++i) {
+      const auto& s = a_.saturation[i];
+      const std::string content = i < r_.targets.size() ? r_.targets[i].second : "";
+      const std::string label = fmt::format("{} {}", s.gas, content);
+      if (s.pressure_gauge.asked) {
+        line(label, shown(s.pressure_gauge, bar, " gauge"),
+             shown(s.pressure_absolute, bar, " abs"));
+      }
+      if (s.temperature.asked) {
+        line(label, shown(s.temperature, unit("°C", Dimension::temperature)));
+      }
+    }
+  }
+
+  void container() {
+    if (a_.container.empty()) return;
+    section("In the closed package, at equilibrium");
+    const auto& bar = unit("bar", Dimension::pressure);
+    for (const auto& c : a_.container) {
+      line("Temperature", shown(c.temperature, unit("°C", Dimension::temperature)));
+      line("Pressure", shown(c.pressure_gauge, bar, " gauge"),
+           shown(c.pressure_absolute, bar, " abs"));
+      line("Ullage", shown(c.ullage, unit("%", Dimension::fraction), " of brimful"));
+      for (const auto& g : c.gases) gas(g);
+    }
+  }
+
+  void opening() {
+    if (a_.opening.empty()) return;
+    const auto at = shown(a_.opening_temperature, unit("°C", Dimension::temperature));
+    section(fmt::format("Lost on opening at {}, each on top of the one before", at));
+    for (const auto& loss : a_.opening) {
+      const bool co2 = loss.gas.empty();
+      const auto& in = co2 ? unit("g", Dimension::mass) : unit("mg", Dimension::mass);
+      const std::string name = co2 ? "CO2" : std::string(loss.gas);
+      if (!a_.container.empty()) loss_line(name + " from the headspace", loss.headspace_loss, in);
+      loss_line(name + " as fizz", loss.fizz_loss, in);
+      loss_line(name + " going flat in air", loss.flat_loss, in);
+    }
+  }
+
+  // A gas other than CO2 that has nothing to lose needs no line.
+  void loss_line(const std::string& label, const Figure<Mass>& loss, const Unit& in) {
+    const bool silent = !label.starts_with("CO2") && loss.value.value() == 0;
+    if (loss.asked && !silent) line(label, shown(loss, in));
+  }
+
+  void trace() {
+    for (const auto& chain : r_.trace.chains) {
+      section(fmt::format("How {} came about", chain.figure));
+      for (const auto& step : chain.steps) trace_step(step);
+    }
+  }
+
+  void trace_step(const TraceStep& step) {
+    constexpr int digits = 6;
+    out_ += wrapped("  ", fmt::format("{}: {} = {} {}", step.law, step.result.symbol,
+                                      significant(step.result.value, digits), step.result.unit));
+    if (!step.inputs.empty()) {
+      std::string inputs;
+      for (const auto& in : step.inputs) {
+        if (!inputs.empty()) inputs += ", ";
+        inputs += fmt::format("{} = {} {}", in.symbol, significant(in.value, digits), in.unit);
+      }
+      out_ += wrapped("      from ", inputs);
+    }
+    if (step.inputs.size() > 1 || step.record != nullptr) {
+      out_ += wrapped("      by   ", step.equation);
+    }
+    if (step.record != nullptr) {
+      out_ += wrapped("      rec  ", fmt::format("{}, u {} [{}]", step.record->key,
+                                                 step.record->uncertainty.printed,
+                                                 source_number(step.record->source)));
+    }
+  }
+
+  [[nodiscard]] std::size_t source_number(std::string_view key) const {
+    const auto it = std::find_if(r_.sources.begin(), r_.sources.end(),
+                                 [&](const CitedSource& s) { return s.key == key; });
+    return static_cast<std::size_t>(it - r_.sources.begin()) + 1;
+  }
+
+  void notes() {
+    if (!r_.cautions.empty()) section("Cautions");
+    for (const auto& c : r_.cautions) out_ += wrapped("  ! ", c.message);
+    if (!r_.assumptions.empty() || !r_.doubt_not_stated.empty()) section("Assumed");
+    for (const auto& a : r_.assumptions) out_ += wrapped("  - ", a.message);
+    if (!r_.doubt_not_stated.empty()) {
+      out_ += wrapped("  - ", fmt::format("doubt not stated, taken as exact: {}",
+                                          fmt::join(r_.doubt_not_stated, ", ")));
+    }
+  }
+
+  void sources() {
+    section("Sources");
+    for (std::size_t i = 0; i < r_.sources.size(); ++i) {
+      out_ += wrapped(fmt::format("  [{}] ", i + 1), r_.sources[i].citation);
+    }
+  }
+
+  void audit() {
+    section("Audit");
+    out_ += fmt::format("  {} {}\n", r_.audit.program, r_.audit.version);
+    out_ += fmt::format("  recipe    {}\n  constants {}\n", r_.audit.recipe_digest,
+                        r_.audit.constants_digest);
+    for (const auto& [key, text] : r_.audit.inputs) {
+      out_ += wrapped("  " + padded(key, 26) + " ", text);
+    }
+  }
+
+  const Report& r_;
+  const Answer& a_;
+  std::string out_;
+};
+
+}  // namespace
+
+std::string text_report(const Report& report, bool with_trace) {
+  return TextReport(report).write(with_trace);
+}
+
+}  // namespace capsigh

@@ -1,0 +1,105 @@
+"""Files, pipes and exit statuses of the command. Usage: files_test.py CAPSIGH TOP"""
+import json
+import os
+import pathlib
+import subprocess
+import sys
+import tempfile
+
+capsigh, top = sys.argv[1], pathlib.Path(sys.argv[2])
+can = (top / "scenarios/sparkling-water-can.toml").read_bytes()
+failures = []
+checked = 0
+
+
+def run(*arguments, stdin=b"", as_user=None, **more):
+    def drop():
+        os.setgid(as_user)
+        os.setuid(as_user)
+    return subprocess.run([capsigh, *map(str, arguments)], input=stdin, capture_output=True, timeout=60,
+                          preexec_fn=drop if as_user else None, **more)
+
+
+def check(name, condition, done=None):
+    global checked
+    checked += 1
+    if not condition:
+        failures.append(name + ("" if done is None else f": exit {done.returncode}, {done.stderr[:300]!r}"))
+
+
+with tempfile.TemporaryDirectory() as scratch:
+    os.chmod(scratch, 0o755)
+    scratch = pathlib.Path(scratch)
+    done = run("report", scratch / "none.toml")
+    check("a missing file exits 3", done.returncode == 3 and b"No such file" in done.stderr, done)
+    done = run("report", scratch)
+    check("a directory exits 3", done.returncode == 3 and b"is a directory" in done.stderr, done)
+    secret = scratch / "secret.toml"
+    secret.write_bytes(can)
+    secret.chmod(0)
+    nobody = 65534
+    if os.getuid() == 0:
+        # The build may lie where nobody may not go: run a copy.
+        program = scratch / "capsigh"
+        program.write_bytes(pathlib.Path(capsigh).read_bytes())
+        program.chmod(0o755)
+        done = subprocess.run([str(program), "report", str(secret)], capture_output=True,
+                              preexec_fn=lambda: (os.setgid(nobody), os.setuid(nobody)))
+    else:
+        done = run("report", secret)
+    check("no permission exits 3", done.returncode == 3 and b"Permission denied" in done.stderr, done)
+
+    (scratch / "binary.toml").write_bytes(pathlib.Path(capsigh).read_bytes()[:4096])
+    done = run("report", scratch / "binary.toml")
+    check("a binary exits 2", done.returncode == 2 and done.stderr.count(b"error:") == 1, done)
+    (scratch / "c3.toml").write_bytes(b"title = \"\xc3")
+    done = run("report", scratch / "c3.toml")
+    check("a lone 0xC3 exits 2", done.returncode == 2 and b"0xC3" in done.stderr, done)
+    (scratch / "deep.toml").write_bytes(b"a = " + b"[" * 20000)
+    done = run("report", scratch / "deep.toml")
+    check("deep nesting exits 2", done.returncode == 2 and b"deeper" in done.stderr, done)
+    (scratch / "long.toml").write_bytes(b"# x\n" * 100000)
+    done = run("report", scratch / "long.toml")
+    check("a long file exits 2", done.returncode == 2 and b"bytes" in done.stderr, done)
+
+    plain = run("report", "-", "--as", "json", stdin=can)
+    check("standard input is read", plain.returncode == 0, plain)
+    for name, text in (("BOM", b"\xef\xbb\xbf" + can), ("CRLF", can.replace(b"\n", b"\r\n"))):
+        done = run("report", "-", "--as", "json", stdin=text)
+        check(name + " is read", done.returncode == 0, done)
+        a, b = json.loads(plain.stdout), json.loads(done.stdout)
+        a.pop("audit"), b.pop("audit")
+        check(name + " reads the same", a == b)
+
+    two = run("report", scratch / "none.toml", "-", stdin=can)
+    check("a missing file among others exits 3", two.returncode == 3, two)
+    both = run("report", "-", top / "scenarios/sparkling-water-can.toml", "--as", "json", stdin=can)
+    check("several recipes give an array", len(json.loads(both.stdout)) == 2)
+
+    out = scratch / "report.json"
+    done = run("report", "-", "--as", "json", "--out", out, stdin=can)
+    check("--out writes what standard output shows", out.read_bytes() == plain.stdout and not done.stdout)
+    done = run("report", "-", "--out", scratch / "no/such/place", stdin=can)
+    check("an --out that cannot be exits 3", done.returncode == 3, done)
+    before = sorted(os.listdir(scratch))
+    done = run("report", "-", "--out", scratch / "bad.txt", stdin=b"[contact]\n")
+    check("nothing is written for a bad recipe", sorted(os.listdir(scratch)) == before, done)
+    check("a bad recipe exits 2", done.returncode == 2, done)
+    if os.path.exists("/dev/full"):
+        with open("/dev/full", "wb") as full:
+            done = subprocess.run([capsigh, "report", "-"], input=can, stdout=full, stderr=subprocess.PIPE)
+        check("a full disk exits 3", done.returncode == 3 and b"No space" in done.stderr, done)
+
+    for arguments in ([], ["reprot", "x"], ["report"], ["report", "-", "--as", "pdf"], ["report", "-", "--nope"]):
+        done = run(*arguments, stdin=can)
+        check(f"usage {arguments} exits 2", done.returncode == 2 and done.stderr, done)
+    check("--help exits 0", run("--help").returncode == 0)
+    check("--version exits 0", run("--version").stdout.strip() == b"0.1.0")
+    done = run("report", "-", "--trace", stdin=can)
+    check("--trace shows records", b"henry.CO2.weiss1974" in done.stdout, done)
+    hot = b'[contact]\ntemperature = "4 degC"\npressure = "12 bar gauge"\n'
+    check("a caution alone exits 0", run("report", "-", stdin=hot).returncode == 0)
+    check("--strict exits 2", run("report", "-", "--strict", stdin=hot).returncode == 2)
+
+print("\n".join(failures) or f"{checked} checks")
+sys.exit(1 if failures else 0)

@@ -1,0 +1,24 @@
+#!/bin/sh
+# Sets up, builds and runs the tests. `sh tests/run.sh full` adds the other compiler, the sanitizers
+# and the linter.
+set -eu
+top=$(CDPATH='' cd -- "$(dirname -- "$0")/.." && pwd)
+cd "$top"
+
+build_and_test() { # NAME CMAKE-OPTIONS...
+  name=$1
+  shift
+  [ -f "build/$name/build.ninja" ] || cmake -S . -B "build/$name" -G Ninja -DCAPSIGH_WERROR=ON "$@"
+  cmake --build "build/$name"
+  ctest --test-dir "build/$name" --output-on-failure --no-tests=error -j "$(nproc)"
+}
+
+sh tests/setup.sh build test
+if [ "${1:-}" = full ]; then
+  sh tests/setup.sh full
+  build_and_test sanitized -DCMAKE_BUILD_TYPE=RelWithDebInfo -DCAPSIGH_SANITIZE=address,undefined
+  build_and_test clang -DCMAKE_BUILD_TYPE=Release -DCMAKE_CXX_COMPILER=clang++-14
+  find src -name '*.cpp' -print0 |
+    xargs -0 -n 4 -P "$(nproc)" clang-tidy-14 -p build/clang --quiet --warnings-as-errors='*'
+fi
+build_and_test release -DCMAKE_BUILD_TYPE=Release
