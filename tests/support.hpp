@@ -44,7 +44,7 @@ inline Report answered(const std::string& text) {
   auto document = parse_document(text, "test.toml");
   REQUIRE(document);
   auto result = report(read_recipe(*document, "test.toml"), text, built_in_library());
-  for (const auto& f : result.findings) INFO(f.message);
+  for (const auto& f : result.findings) UNSCOPED_INFO(f.message);
   REQUIRE(result);
   return *result;
 }
@@ -98,6 +98,9 @@ inline Medium medium(const std::string& gas_lines) {
                  "\n[contact]\ntemperature = \"10 degC\"\npressure = \"2 bar abs\"\n")
       .problem.medium;
 }
+
+/// The liquid of a medium, resolved.
+inline Liquid liquid_of(const Medium& m) { return compose(m.liquid, m.content_temperature); }
 
 inline Temperature celsius(double t) { return from_si<Temperature>(t + 273.15); }
 inline Pressure bar(double p) { return from_si<Pressure>(p * 1e5); }

@@ -5,6 +5,7 @@
 #include <algorithm>
 #include <cmath>
 
+#include "liquids.hpp"
 #include "records.hpp"
 
 namespace capsigh {
@@ -47,9 +48,11 @@ class Binder {
     read_gases();
     check_contact();
     check_contents();
+    check_altitude();
     if (recipe_.container) check_container(*recipe_.container);
     if (has_error(findings_) || !recipe_.readable) return {{}, findings_};
     build_medium();
+    if (has_error(findings_)) return {{}, findings_};
     bind_ambient();
     bind_contact();
     bind_targets();
@@ -86,19 +89,80 @@ class Binder {
 
   // ---- liquid and gases -------------------------------------------------------------------------
 
+  // The named liquid, its relation and what is wrong with either.
   void check_liquid() {
-    binding_.liquid = "water";
-    if (!recipe_.like) {
-      assume("liquid-assumed", "liquid: water");
-      return;
+    liquid_ = recipe_.liquid ? &*recipe_.liquid : nullptr;
+    const LocatedText* like = liquid_ != nullptr && liquid_->like ? &*liquid_->like : nullptr;
+    binding_.liquid = like != nullptr ? like->text : "water";
+    named_ = answer_detail::named_liquid(library_, binding_.liquid);
+    if (named_ == nullptr) {
+      const auto names = answer_detail::liquid_names(library_);
+      const auto near = nearest_name(binding_.liquid, names);
+      error(
+          "unknown-liquid",
+          near ? fmt::format("no liquid is called '{}'; did you mean '{}'?", binding_.liquid, *near)
+               : fmt::format("no liquid is called '{}'", binding_.liquid),
+          fmt::format("{}", fmt::join(names, ", ")), "like = \"water\"", like->place);
+      named_ = answer_detail::named_liquid(library_, "water");
     }
-    if (recipe_.like->text == "water") return;
-    const auto near = nearest_name(recipe_.like->text, {"water"});
-    error("unknown-liquid",
-          near ? fmt::format("no liquid is called '{}'; did you mean '{}'?", recipe_.like->text,
-                             *near)
-               : fmt::format("no liquid is called '{}'", recipe_.like->text),
-          "water", "like = \"water\"", recipe_.like->place);
+    if (like == nullptr) {
+      assume("liquid-assumed", recipe_.liquid && !recipe_.liquid->solutes.empty()
+                                   ? "liquid: water with what the recipe lists"
+                                   : "liquid: water");
+    }
+    relation_ = answer_detail::relation_in_force(library_, liquid_, *named_, sink());
+    if (liquid_ != nullptr && liquid_->volume_basis) check_volume_basis(*liquid_->volume_basis);
+    check_sugars();
+  }
+
+  void check_volume_basis(const LocatedText& basis) {
+    problem().ideal_volumes = basis.text == "ideal";
+    if (basis.text == "ideal" || basis.text == "real") return;
+    error("unknown-volume-basis", fmt::format("no volume basis is called '{}'", basis.text),
+          "\"real\" (1 vol of CO2 is 1.977 g/L) or \"ideal\" (1.963 g/L)",
+          "volume_basis = \"real\"", basis.place);
+  }
+
+  // Brix counts all that is dissolved; a sugar beside it would count twice.
+  void check_sugars() {
+    if (liquid_ == nullptr) return;
+    const auto of = [&](auto&& wanted) {
+      const auto it = std::find_if(liquid_->solutes.begin(), liquid_->solutes.end(),
+                                   [&](const GivenSolute& s) { return wanted(s.name.text); });
+      return it == liquid_->solutes.end() ? nullptr : &*it;
+    };
+    const auto* brix = of([](const std::string& key) { return key == "brix"; });
+    const auto* sugar = of([](const std::string& key) {
+      return key == "sucrose" || key == "glucose" || key == "fructose" || key == "extract";
+    });
+    if (brix == nullptr || sugar == nullptr) return;
+    error("brix-and-sugar", "brix counts the sugars already", "brix, or the sugars one by one", "",
+          sugar->name.place, brix->name.place);
+  }
+
+  // Bicarbonate does not stay in an acid drink: it ends as CO2.
+  void question_bicarbonate() {
+    if (liquid_ == nullptr) return;
+    bool acid = false;
+    bool bicarbonate = false;
+    for (const auto& s : liquid_->solutes) {
+      acid = acid || s.name.text == "citric_acid";
+      bicarbonate = bicarbonate || (s.salt && s.name.text.find("CO3") != std::string::npos);
+    }
+    if (!acid || !bicarbonate) return;
+    binding_.notes.push_back(note(
+        Severity::caution, "bicarbonate-in-acid",
+        "carbonate and bicarbonate end as CO2 in an acid drink (80 mg/L NaHCO3: 0.04 g/L); it is "
+        "not added to the content here"));
+  }
+
+  answer_detail::LiquidSink sink() {
+    return {[this](Finding f) {
+              f.severity = Severity::error;
+              if (!f.place || f.place->file.empty()) f.place = Place{recipe_.file, 0, 0, 1, ""};
+              findings_.push_back(std::move(f));
+            },
+            [this](const std::string& key) { binding_.doubt_not_stated.push_back(key); }};
   }
 
   // The gases behind a name; empty (and a finding) if there is no such gas.
@@ -246,8 +310,23 @@ class Binder {
   }
 
   void build_medium() {
-    problem().medium = answer_detail::water_with(library_, gases_);
-    problem().co2 = index("CO2");
+    const auto zero = constant<Temperature>(library_, "fundamental.T0");
+    auto liquid = answer_detail::liquid_model(library_, liquid_, *named_, zero, sink());
+    if (has_error(findings_)) return;
+    problem().medium = answer_detail::medium_of(library_, std::move(liquid), gases_, relation_);
+    binding_.relation = problem().medium.convention.record;
+    for (const auto part : named_->parts) {
+      const Record& relation = library_.at(part);
+      if (&relation != binding_.relation) binding_.other_relations.push_back(&relation);
+    }
+    describe_liquid();
+    question_bicarbonate();
+    for (const auto& gas : gases_) {
+      if (const Record* reaction = library_.find("reactive." + gas)) {
+        binding_.notes.push_back(
+            note(Severity::caution, "reactive-gas", std::string(reaction->definition)));
+      }
+    }
     problem().air = spread(air_);
     const auto& lines = recipe_.gas;
     for (std::size_t i = 0; i < lines_.size(); ++i) {
@@ -258,6 +337,23 @@ class Binder {
       line.share = exactly(Fraction(1.0));
       if (!lines.empty() && !line.rest) line.share = take("gas." + line.name, lines[i].share);
       problem().contact.gas.push_back(line);
+    }
+  }
+
+  // What of the liquid was not in the recipe.
+  void describe_liquid() {
+    std::string defaults;
+    for (std::size_t i = 0; i < named_->values.size(); ++i) {
+      const std::string_view symbol = named_->symbols[i];
+      const std::size_t space = symbol.find(' ');
+      defaults += fmt::format("{}{} {} {}", defaults.empty() ? "" : ", ", symbol.substr(0, space),
+                              named_->values[i].digits, symbol.substr(space + 1));
+    }
+    const auto& solutes = problem().medium.liquid.solutes;
+    if (std::any_of(solutes.begin(), solutes.end(), [](const auto& s) { return s.assumed; })) {
+      assume("composition-assumed", fmt::format("composition of {} where the recipe gives none: {}",
+                                                binding_.liquid, defaults));
+      cite(*named_);
     }
   }
 
@@ -302,6 +398,17 @@ class Binder {
     }
   }
 
+  // The standard troposphere ends there, and nobody carbonates beyond.
+  void check_altitude() {
+    if (!recipe_.contact || !recipe_.contact->altitude || !recipe_.contact->altitude->value) return;
+    const Record& range = library_.at("atmosphere.altitude_range");
+    const double metres = recipe_.contact->altitude->value->value();
+    if (metres >= range.values[0].value && metres <= range.values[1].value) return;
+    error("impossible-value", "'contact.altitude' is beyond the standard troposphere",
+          fmt::format("{} to {} m", range.values[0].digits, range.values[1].digits),
+          "altitude = \"350 m\"", recipe_.contact->altitude->source.place);
+  }
+
   void question_ambient(const Given<Length>& altitude) {
     const auto standard = problem().ambient.atmosphere(*altitude.value);
     const auto stated = problem().ambient.stated.best;
@@ -325,11 +432,25 @@ class Binder {
     if (given.dissolved_place) {
       contact.content = bind_content(given.dissolved.front(), false);
     } else if (!(given.temperature && given.pressure)) {
-      contact.content = bind_content(recipe_.target.front(), true);
+      contact.content = bind_content(leading_target(), true);
+      problem().content_from_target = true;
     }
     contact.known = !contact.content    ? Known::temperature_pressure
                     : given.temperature ? Known::temperature_content
                                         : Known::pressure_content;
+  }
+
+  // One of temperature and pressure is missing: one target decides it, CO2 before others.
+  const GivenContent& leading_target() {
+    const auto& targets = recipe_.target;
+    const auto co2 = std::find_if(targets.begin(), targets.end(),
+                                  [](const GivenContent& t) { return t.gas.text == "CO2"; });
+    const auto& leading = co2 != targets.end() ? *co2 : targets.front();
+    if (targets.size() > 1) {
+      assume("target-leads",
+             fmt::format("of several targets, {} decides what is missing", leading.gas.text));
+    }
+    return leading;
   }
 
   void bind_pressure(const GivenPressure& given) {
@@ -427,6 +548,9 @@ class Binder {
 
   const Recipe& recipe_;
   const Library& library_;
+  const LiquidSection* liquid_ = nullptr;
+  const Record* named_ = nullptr;
+  const Record* relation_ = nullptr;
   Binding binding_;
   Findings findings_;
   std::vector<std::string> gases_;

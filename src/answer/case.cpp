@@ -1,15 +1,18 @@
 #include "capsigh/answer/case.hpp"
 
+#include <algorithm>
+
 namespace capsigh {
 namespace {
 
 class DoubtList {
  public:
   template <class Q>
-  void input(const std::string& name, Uncertain<Q>& input) {
+  void input(const std::string& name, Uncertain<Q>& input,
+             std::string_view unit = si_symbol<Difference<Q>>) {
     const double u = si_value(input.u);
     if (!(u > 0)) return;
-    list_.push_back({name, &input.z, u, std::string(si_symbol<Difference<Q>>), input.shape, false});
+    list_.push_back({name, &input.z, u, std::string(unit), input.shape, false});
   }
 
   template <class Q>
@@ -19,8 +22,11 @@ class DoubtList {
 
   void record(RecordDoubt& doubt) {
     if (doubt.record == nullptr || !(doubt.u > 0)) return;
-    list_.push_back({std::string(doubt.record->key), &doubt.z, doubt.u * doubt.widening,
-                     doubt.is_absolute ? "SI unit of the record" : "1", Shape::normal, true});
+    const auto& printed = doubt.record->uncertainty.printed;
+    const auto unit = printed.substr(std::min(printed.find(' ') + 1, printed.size()));
+    const double scale = doubt.u / std::stod(std::string(printed));
+    list_.push_back({std::string(doubt.record->key), &doubt.z, doubt.u * doubt.widening / scale,
+                     std::string(unit), Shape::normal, true});
   }
 
   std::vector<Doubt> take() { return std::move(list_); }
@@ -28,6 +34,17 @@ class DoubtList {
  private:
   std::vector<Doubt> list_;
 };
+
+std::string_view unit_of(ContentMeasure measure) {
+  switch (measure) {
+    case ContentMeasure::mass_concentration: return "kg/m3";
+    case ContentMeasure::amount_concentration: return "mol/m3";
+    case ContentMeasure::molality: return "mol/kg";
+    case ContentMeasure::volumes:
+    case ContentMeasure::mass_fraction: break;
+  }
+  return "1";
+}
 
 }  // namespace
 
@@ -59,7 +76,7 @@ std::vector<Doubt> each_doubt(Case& c) {
   list.input("contact.pressure", contact.absolute_pressure);
   if (contact.content) {
     list.input("contact.dissolved." + std::string(c.medium.gases[contact.content->gas].name),
-               contact.content->amount);
+               contact.content->amount, unit_of(contact.content->measure));
   }
   list.input("contact.altitude", c.ambient.altitude);
   list.input("contact.ambient", c.ambient.stated);
@@ -70,6 +87,10 @@ std::vector<Doubt> each_doubt(Case& c) {
     list.input("container.closed_at.air", c.container->closing_air);
   }
   if (c.opening) list.input("opening.temperature", c.opening->temperature);
+  for (auto& solute : c.medium.liquid.solutes) {
+    list.input("liquid." + std::string(solute.name), solute.amount);
+  }
+  list.input("liquid.density", c.medium.liquid.measured_density);
   each_record_doubt(c.medium, [&](RecordDoubt& doubt) { list.record(doubt); });
   return list.take();
 }

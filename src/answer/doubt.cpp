@@ -4,6 +4,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <limits>
 #include <map>
 
 #include "capsigh/answer/solve.hpp"
@@ -12,10 +13,13 @@
 namespace capsigh {
 namespace {
 
+// Every slot of an answer; one that was not asked is NaN, so that slots asked on one side of a
+// doubt only are seen.
 std::vector<double> flatten(const Answer& answer) {
   std::vector<double> values;
   each_figure(answer, [&](const FigurePath&, const auto& figure, const JsonUnit&) {
-    values.push_back(si_value(figure.value));
+    values.push_back(figure.asked ? si_value(figure.value)
+                                  : std::numeric_limits<double>::quiet_NaN());
   });
   return values;
 }
@@ -30,24 +34,35 @@ std::optional<std::vector<double>> moved(Case& c, const Doubt& doubt, double z) 
 }
 
 // What one standard uncertainty of a doubt moves every figure by: half the way from z = −1 to +1;
-// one-sided where only one side has an answer.
-std::vector<double> sensitivities(Case& c, const Doubt& doubt, const std::vector<double>& at_best) {
+// one-sided where only one side has an answer. nullopt: no side has one.
+std::optional<std::vector<double>> sensitivities(Case& c, const Doubt& doubt,
+                                                 const std::vector<double>& at_best) {
   const auto up = moved(c, doubt, 1.0);
   const auto down = moved(c, doubt, -1.0);
-  std::vector<double> change(at_best.size(), 0.0);
+  if (!up && !down) return std::nullopt;
   // A root is found to about 1e-15; smaller differences than this are its noise, not a doubt.
   constexpr double noise = 1e-12;
+  const auto side = [&](const std::optional<std::vector<double>>& values, std::size_t i) {
+    return values && std::isfinite((*values)[i]);
+  };
+  std::vector<double> change(at_best.size(), 0.0);
   for (std::size_t i = 0; i < change.size(); ++i) {
-    if (up && down) {
-      change[i] = 0.5 * ((*up)[i] - (*down)[i]);
-    } else if (up) {
-      change[i] = (*up)[i] - at_best[i];
-    } else if (down) {
-      change[i] = at_best[i] - (*down)[i];
-    }
-    if (std::abs(change[i]) <= noise * std::abs(at_best[i])) change[i] = 0;
+    const double high = side(up, i) ? (*up)[i] : at_best[i];
+    const double low = side(down, i) ? (*down)[i] : at_best[i];
+    const double sides = (side(up, i) ? 1 : 0) + (side(down, i) ? 1 : 0);
+    if (sides > 0) change[i] = (high - low) / sides;
+    if (!(std::abs(change[i]) > noise * std::abs(at_best[i]))) change[i] = 0;
   }
   return change;
+}
+
+Finding too_wide(const Doubt& doubt) {
+  Finding f;
+  f.code = "doubt-too-wide";
+  f.message =
+      fmt::format("one standard uncertainty of {} to either side leads to no answer", doubt.name);
+  f.expected = "a ± within which an answer exists";
+  return f;
 }
 
 bool main_figure(const std::string& path) {
@@ -81,13 +96,18 @@ void widen(Medium& medium, const Record* record, double factor) {
 
 }  // namespace
 
-std::vector<BudgetLine> propagate(Case& c, Answer& answer) {
+Propagation propagate(Case& c, Answer& answer) {
   const auto doubts = each_doubt(c);
   const auto at_best = flatten(answer);
   std::vector<std::vector<double>> changes;
   changes.reserve(doubts.size());
-  for (const auto& doubt : doubts) changes.push_back(sensitivities(c, doubt, at_best));
-  std::vector<BudgetLine> budget;
+  Propagation result;
+  for (const auto& doubt : doubts) {
+    auto change = sensitivities(c, doubt, at_best);
+    if (!change) result.findings.push_back(too_wide(doubt));
+    changes.push_back(change.value_or(std::vector<double>(at_best.size(), 0.0)));
+  }
+  auto& budget = result.budget;
   std::size_t slot = 0;
   each_figure(answer, [&](const FigurePath& path, auto& figure, const JsonUnit& unit) {
     double variance = 0;
@@ -108,7 +128,7 @@ std::vector<BudgetLine> propagate(Case& c, Answer& answer) {
     }
     ++slot;
   });
-  return budget;
+  return result;
 }
 
 Findings judge_ranges(Case& c, const Trace& trace, double widening_per_width) {
@@ -119,25 +139,28 @@ Findings judge_ranges(Case& c, const Trace& trace, double widening_per_width) {
   std::map<const Record*, Worst> worst;
   for (const auto& chain : trace.chains) {
     for (const auto& step : chain.steps) {
-      if (step.record == nullptr) continue;
-      const double widths = widths_outside(step.record->range, step.conditions);
+      const Record* judged = step.record != nullptr ? step.record : step.definition;
+      if (judged == nullptr) continue;
+      const double widths = widths_outside(judged->range, step.conditions);
       if (widths <= 0) continue;
-      auto& entry = worst[step.record];
+      auto& entry = worst[judged];
       if (widths > entry.widths) entry = {widths, step.conditions};
     }
   }
   Findings cautions;
   for (const auto& [record, entry] : worst) {
+    const bool definition = record->uncertainty.kind == UncertaintyKind::exact;
     const double factor = 1.0 + widening_per_width * entry.widths;
-    widen(c.medium, record, factor);
+    if (!definition) widen(c.medium, record, factor);
     const auto& box = nearest_box(record->range, entry.conditions);
     Finding f;
     f.severity = Severity::caution;
     f.code = "out-of-range";
-    f.message = fmt::format(
-        "{} is used at {}, outside its range of {}; extrapolated, its uncertainty taken {} times",
-        record->key, conditions_text(entry.conditions, box), record->range_text,
-        significant(factor, 3));
+    f.message = fmt::format("{} is used at {}, outside its range of {}; {}", record->key,
+                            conditions_text(entry.conditions, box), record->range_text,
+                            definition ? std::string("continued from the edge by composition")
+                                       : fmt::format("extrapolated, its uncertainty taken {} times",
+                                                     significant(factor, 3)));
     cautions.push_back(std::move(f));
   }
   std::sort(cautions.begin(), cautions.end(),

@@ -3,6 +3,8 @@
 #include <algorithm>
 #include <stdexcept>
 
+#include "capsigh/quantity/grammar.hpp"
+
 namespace capsigh::answer_detail {
 namespace {
 
@@ -19,13 +21,8 @@ std::array<double, N> coefficients(const Record& record) {
   return c;
 }
 
-template <class Q>
-CitedConstant<Q> cited_constant(const Record& record) {
-  return {{from_si<Q>(record.values[0].value * record.factor)}, doubt_of(record)};
-}
-
 HenryForm henry_form(const Record& record, const Medium& m) {
-  const MolarMass water = m.water_molar_mass.law.value;
+  const MolarMass water = m.liquid.water_molar_mass.law.value;
   if (record.form == "three-term") {
     return ThreeTermHenry{coefficients<3>(record), record.factor};
   }
@@ -33,9 +30,36 @@ HenryForm henry_form(const Record& record, const Medium& m) {
     return InversePowersHenry{coefficients<3>(record), record.factor, water};
   }
   if (record.form == "high-temperature") {
-    return HighTemperatureHenry{coefficients<3>(record), m.vapour.law.critical_temperature, water};
+    return HighTemperatureHenry{coefficients<3>(record),
+                                m.liquid.water_vapour.law.critical_temperature, water};
+  }
+  if (record.form == "mole-fraction-log" || record.form == "mole-fraction-log-kelvin") {
+    constexpr double hundreds = 100;
+    const double theta = record.form == "mole-fraction-log" ? hundreds : 1.0;
+    return MoleFractionHenry{coefficients<4>(record), theta, water, m.atmosphere};
+  }
+  if (record.form == "two-term") {
+    return TwoTermHenry{record.values[0].value, record.values[1].value, record.factor, 1.0};
   }
   throw std::logic_error("no Henry form " + std::string(record.form));
+}
+
+// Multiplies every later two-term record by what makes it meet the one before, where the overlap
+// begins. Both are per fugacity in the tables that ask for it.
+void scale_to_meet(HenryChain& chain, const Medium& m) {
+  for (std::size_t i = 0; i < chain.overlaps.size(); ++i) {
+    const auto t = from_si<Temperature>(chain.overlaps[i].low);
+    const auto value = [&](const HenryForm& form) {
+      return std::visit(
+          [&](const auto& law) {
+            return law(t, m.liquid.water_density.law(t), m.liquid.water_vapour.law(t)).value();
+          },
+          form);
+    };
+    if (auto* later = std::get_if<TwoTermHenry>(&chain.segments[i + 1].form)) {
+      later->scale = value(chain.segments[i].form) / value(chain.segments[i + 1].form);
+    }
+  }
 }
 
 HenryChain henry_chain(const Library& library, const Record& selection, const Medium& m) {
@@ -44,15 +68,23 @@ HenryChain henry_chain(const Library& library, const Record& selection, const Me
     const Record& record = library.at(part);
     chain.segments.push_back({henry_form(record, m), doubt_of(record),
                               record.reference == "1 atm" ? HenryReference::one_atmosphere
-                                                          : HenryReference::vapour_pressure});
+                                                          : HenryReference::vapour_pressure,
+                              record.scale == "partial pressure"});
   }
   for (std::size_t i = 0; i + 1 < selection.values.size(); i += 2) {
     chain.overlaps.push_back({selection.values[i].value, selection.values[i + 1].value});
   }
+  if (selection.form == "overlap-scaled") scale_to_meet(chain, m);
   return chain;
 }
 
-VirialForm virial_form(const Record& record) {
+VirialForm virial_form(const Record& record, const Medium& m) {
+  if (record.form == "tsonopoulos") {
+    const auto& bar = *find_unit("bar", Dimension::pressure);
+    return TsonopoulosVirial{from_si<Temperature>(record.values[0].value),
+                             from_si<Pressure>(record.values[1].value * bar.factor),
+                             record.values[2].value, m.r};
+  }
   if (record.form == "power-series") {
     return PowerSeriesVirial{coefficients<4>(record), record.factor};
   }
@@ -66,9 +98,15 @@ GasModel gas_model(const Library& library, const std::string& name, const Medium
   gas.molar_mass = cited_constant<MolarMass>(library.at(key_of("molar_mass", name)));
   gas.henry = henry_chain(library, selection, m);
   const Record& virial = library.at(key_of("virial", name));
-  gas.virial = virial_form(virial);
+  gas.virial = virial_form(virial, m);
   gas.virial_doubt = doubt_of(virial);
   gas.molar_volume = cited_constant<MolarVolume>(library.at(key_of("molar_volume", name)));
+  const Record* salting = library.find(key_of("sechenov", name));
+  if (salting == nullptr) salting = &library.at("sechenov.default");
+  if (!m.liquid.ions.empty()) {
+    gas.salting = {{salting->values[0].value, salting->values[1].value, salting->factor},
+                   doubt_of(*salting)};
+  }
   if (const Record* volume = library.find(key_of("gas_volume", name))) {
     gas.standard_volume = cited_constant<MolarVolume>(*volume);
   }
@@ -97,24 +135,67 @@ void choose_cross_virials(const Library& library, Medium& m) {
 
 }  // namespace
 
-Medium water_with(const Library& library, const std::vector<std::string>& gases) {
+namespace {
+
+Interval hull(std::span<const ValidityBox> range, Interval ValidityBox::*side) {
+  Interval all = range.front().*side;
+  for (const auto& box : range) {
+    all.low = std::min(all.low, (box.*side).low);
+    all.high = std::max(all.high, (box.*side).high);
+  }
+  return all;
+}
+
+}  // namespace
+
+Convention convention_of(const Library& library, const Record* relation, const Medium& m) {
+  Convention convention;
+  if (relation == nullptr) return convention;
+  convention.record = relation;
+  convention.temperature = hull(relation->range, &ValidityBox::temperature);
+  convention.pressure = hull(relation->range, &ValidityBox::pressure);
+  if (relation->form == "asbc") {
+    convention.relation = AsbcRelation::from(*relation);
+  } else if (relation->form == "mebak") {
+    convention.relation = MebakRelation::from(*relation);
+  } else if (relation->form == "oiv") {
+    convention.relation = OivRelation::from(*relation, m.r);
+  } else {
+    // Pure water without doubt: the convention is what water holds by the tables, whatever they
+    // are worth.
+    LiquidModel water;
+    water.water_vapour = m.liquid.water_vapour;
+    water.water_density = m.liquid.water_density;
+    water.water_molar_mass = m.liquid.water_molar_mass;
+    convention.relation = WaterEquivalent{
+        std::make_shared<const Medium>(medium_of(library, std::move(water), {"CO2"}, nullptr))};
+  }
+  return convention;
+}
+
+Medium medium_of(const Library& library, LiquidModel liquid, const std::vector<std::string>& gases,
+                 const Record* relation) {
   Medium m;
   m.r = constant<GasConstant>(library, "fundamental.R");
   m.atmosphere = constant<Pressure>(library, "fundamental.atm");
   m.zero_celsius = constant<Temperature>(library, "fundamental.T0");
   m.content_temperature = constant<Temperature>(library, "fundamental.T_content");
-  const Record& vapour = library.at("vapour.water");
-  m.vapour = {WaterVapourPressure::from(vapour), doubt_of(vapour)};
-  const Record& density = library.at("density.water");
-  m.density = {WaterDensity::from(density, m.zero_celsius), doubt_of(density)};
-  m.water_molar_mass = cited_constant<MolarMass>(library.at("molar_mass.H2O"));
+  m.liquid = std::move(liquid);
   const Record& truncation = library.at("real_gas.second_virial");
   m.truncation = doubt_of(truncation);
   m.pressure_limit = from_si<Pressure>(truncation.limit[0].pressure.high);
   const Record& search = library.at("assumed.temperature_search");
   m.temperature_search = {search.values[0].value, search.values[1].value};
-  for (const auto& gas : gases) m.gases.push_back(gas_model(library, gas, m));
+  const Record& condensation = library.at("vapour.CO2");
+  m.condensation = {coefficients<4>(condensation),
+                    from_si<Temperature>(condensation.values[4].value),
+                    from_si<Pressure>(condensation.values[5].value * condensation.factor)};
+  for (const auto& gas : gases) {
+    if (gas == "CO2") m.co2 = m.gases.size();
+    m.gases.push_back(gas_model(library, gas, m));
+  }
   choose_cross_virials(library, m);
+  if (m.co2 < m.size()) m.convention = convention_of(library, relation, m);
   return m;
 }
 

@@ -30,6 +30,7 @@ std::vector<CitedSource> cited_sources(const Trace& trace, const Binding& bindin
   for (const auto& chain : trace.chains) {
     for (const auto& step : chain.steps) {
       if (step.record != nullptr) cite(*step.record);
+      if (step.definition != nullptr) cite(*step.definition);
     }
   }
   for (const Record* record : binding.also_used) cite(*record);
@@ -37,17 +38,49 @@ std::vector<CitedSource> cited_sources(const Trace& trace, const Binding& bindin
 }
 
 // Where in the recipe a refusal is best shown: at the value that asks for the impossible.
-Place place_of(const Recipe& recipe, RefusalCode code) {
+Place place_of(const Recipe& recipe, const Refusal& refusal) {
   const auto& contact = recipe.contact;
-  if (!contact) return {recipe.file, 0, 0, 1, ""};
-  const bool by_pressure = code == RefusalCode::boils || code == RefusalCode::pressure_beyond_model;
-  if (by_pressure && contact->pressure) return contact->pressure->source.place;
-  if (code == RefusalCode::container_without_space && recipe.container) {
-    return recipe.container->place;
+  if (refusal.asked_by == AskedBy::closing && recipe.container) return recipe.container->place;
+  if (refusal.asked_by == AskedBy::opening && recipe.opening) {
+    const auto& temperature = recipe.opening->temperature;
+    return temperature ? temperature->source.place : recipe.opening->place;
   }
+  if (!contact) return {recipe.file, 0, 0, 1, ""};
+  if (refusal.code == RefusalCode::temperature_beyond_model && contact->temperature) {
+    return contact->temperature->source.place;
+  }
+  const bool by_pressure = refusal.code == RefusalCode::boils ||
+                           refusal.code == RefusalCode::condenses ||
+                           refusal.code == RefusalCode::pressure_beyond_model;
+  if (by_pressure && contact->pressure) return contact->pressure->source.place;
   if (!contact->dissolved.empty()) return contact->dissolved.front().amount.source.place;
   if (!recipe.target.empty()) return recipe.target.front().amount.source.place;
   return contact->place;
+}
+
+// A wish that nothing fulfils is said, where the rest of the report stands without it.
+void caution_unreachable(Report& report) {
+  for (const auto& s : report.answer.saturation) {
+    if (!s.unreachable) continue;
+    Finding f = explain({*s.unreachable, 0, 0, AskedBy::saturation});
+    f.severity = Severity::caution;
+    f.code = "target-unreachable";
+    f.message = std::string("no pressure of this gas mixture brings the wanted content of ") +
+                std::string(s.gas);
+    report.cautions.push_back(std::move(f));
+  }
+}
+
+// Cautions about ranges, as --strict takes them.
+Findings ranges_as_errors(const Findings& cautions, const std::string& file) {
+  Findings errors;
+  for (const auto& caution : cautions) {
+    if (caution.code != "out-of-range") continue;
+    errors.push_back(caution);
+    errors.back().severity = Severity::error;
+    errors.back().place = Place{file, 0, 0, 1, ""};
+  }
+  return errors;
 }
 
 Finding package_caution() {
@@ -64,6 +97,7 @@ void describe(const Recipe& recipe, const Binding& binding, Report& report) {
   report.title = recipe.title;
   report.about = recipe.about;
   report.liquid = binding.liquid;
+  report.relation = relation_name(binding.relation);
   report.doubt_not_stated = binding.doubt_not_stated;
   const auto& c = binding.problem;
   for (std::size_t i = 0; i < c.medium.size(); ++i) {
@@ -94,7 +128,7 @@ Outcome<Report> report(const Outcome<Recipe>& recipe, std::string_view recipe_te
   const auto solved = solve(problem, &report.trace);
   if (const auto* no = refused(solved)) {
     Finding f = explain(*no);
-    f.place = place_of(*recipe, no->code);
+    f.place = place_of(*recipe, *no);
     return {{}, {f}};
   }
   report.answer = std::get<Answer>(solved);
@@ -102,15 +136,19 @@ Outcome<Report> report(const Outcome<Recipe>& recipe, std::string_view recipe_te
   sort_findings(*binding, report);
   const double widening = library.at("assumed.widening").values[0].value;
   append(report.cautions, judge_ranges(problem, report.trace, widening));
-  if (options.strict && !report.cautions.empty()) {
-    for (auto& caution : report.cautions) {
-      caution.severity = Severity::error;
-      if (!caution.place) caution.place = Place{recipe->file, 0, 0, 1, ""};
-    }
-    return {{}, report.cautions};
+  if (options.strict) {
+    const auto refused_ranges = ranges_as_errors(report.cautions, recipe->file);
+    if (!refused_ranges.empty()) return {{}, refused_ranges};
   }
+  caution_unreachable(report);
   if (problem.container) report.cautions.push_back(package_caution());
-  report.budget = propagate(problem, report.answer);
+  report.second_opinion = second_opinions(*binding, report.answer, library);
+  auto propagation = propagate(problem, report.answer);
+  if (has_error(propagation.findings)) {
+    for (auto& f : propagation.findings) f.place = Place{recipe->file, 0, 0, 1, ""};
+    return {{}, propagation.findings};
+  }
+  report.budget = std::move(propagation.budget);
   report.sources = cited_sources(report.trace, *binding, library);
   report.audit.version = version();
   report.audit.recipe_digest = sha1_digest(recipe_text);

@@ -2,6 +2,8 @@
 
 #include <fmt/format.h>
 
+#include <cmath>
+
 #include "capsigh/balance/closed_container.hpp"
 #include "capsigh/balance/contact.hpp"
 #include "capsigh/balance/opening.hpp"
@@ -22,19 +24,39 @@ struct ContactState {
 
 class Solver {
  public:
-  Solver(const Case& c, Trace* trace) : c_(c), m_(c.medium), trace_(trace) {}
+  Solver(const Case& c, Trace* trace)
+      : c_(c),
+        m_(c.medium),
+        trace_(trace),
+        liquid_(compose(c.medium.liquid, c.medium.content_temperature)) {}
 
   OrRefusal<Answer> run() {
-    auto refusal = solve_contact();
-    if (!refusal) refusal = answer_saturation();
-    if (!refusal && c_.container) refusal = answer_container();
-    if (!refusal && c_.opening) refusal = answer_opening();
+    auto refusal = by(AskedBy::contact, solve_contact());
+    if (!refusal) refusal = by(AskedBy::saturation, answer_saturation());
+    if (!refusal && c_.container) refusal = by(AskedBy::closing, answer_container());
+    if (!refusal && c_.opening) refusal = by(AskedBy::opening, answer_opening());
+    if (!refusal) refusal = all_finite();
     if (refusal) return *refusal;
     return answer_;
   }
 
  private:
   using Maybe = std::optional<Refusal>;
+
+  static Maybe by(AskedBy step, Maybe refusal) {
+    if (refusal) refusal->asked_by = step;
+    return refusal;
+  }
+
+  // No figure leaves the solver that is no number.
+  Maybe all_finite() const {
+    bool finite = true;
+    each_figure(answer_, [&](const FigurePath&, const auto& figure, const JsonUnit&) {
+      finite = finite && std::isfinite(si_value(figure.value));
+    });
+    if (finite) return std::nullopt;
+    return Refusal{RefusalCode::no_number};
+  }
 
   // ---- contact ----------------------------------------------------------------------------------
 
@@ -48,8 +70,10 @@ class Solver {
     return apply(trace, GaugeToAbsolute{}, c_.contact.gauge_pressure->now(), ambient(trace));
   }
 
+  // The degassed liquid at 20 °C.
   MassDensity density_of_content(Trace* trace) const {
-    return m_.density.at(trace, m_.content_temperature);
+    if (trace != nullptr) compose(m_.liquid, m_.content_temperature, trace);
+    return liquid_.density;
   }
 
   Molality molality(const ContentCase& content) const {
@@ -74,14 +98,14 @@ class Solver {
     Temperature t;
     if (c_.contact.known == Known::pressure_content) {
       contact_.pressure = given_pressure(nullptr);
-      const auto found = temperature_for(m_, contact_.shares, contact_.pressure,
+      const auto found = temperature_for(m_, liquid_, contact_.shares, contact_.pressure,
                                          c_.contact.content->gas, molality(*c_.contact.content));
       if (const auto* no = refused(found)) return *no;
       t = std::get<Temperature>(found);
     } else {
       t = c_.contact.temperature->now();
     }
-    contact_.at = at_temperature(m_, t);
+    contact_.at = at_temperature(m_, liquid_, t);
     contact_.mixture = mix(m_, contact_.at, contact_.shares);
     if (c_.contact.known == Known::temperature_content) {
       const auto found = pressure_for(m_, contact_.at, contact_.mixture, c_.contact.content->gas,
@@ -91,7 +115,8 @@ class Solver {
     } else if (c_.contact.known == Known::temperature_pressure) {
       contact_.pressure = given_pressure(nullptr);
     }
-    if (const auto no = pressure_refusal(m_, contact_.at, contact_.pressure)) return no;
+    if (const auto no = pressure_refusal(m_, contact_.at, contact_.shares, contact_.pressure))
+      return no;
     contact_.contents = contents(m_, contact_.at, contact_.mixture, contact_.pressure);
     answer_contact();
     return std::nullopt;
@@ -102,7 +127,8 @@ class Solver {
     answer_.pressure_absolute = contact_.pressure;
     answer_.pressure_gauge = gauge(contact_.pressure, contact_.ambient);
     answer_.ambient = contact_.ambient;
-    answer_.vapour = contact_.at.vapour;
+    answer_.vapour = contact_.at.vapours.water;
+    if (liquid_.x_ethanol.value() > 0) answer_.ethanol = contact_.at.vapours.ethanol;
     for (std::size_t i = 0; i < m_.size(); ++i) {
       if (c_.in_contact[i] == 0) continue;
       answer_.gases.push_back(gas_figures(i, contact_.contents, contact_.mixture, contact_.pressure,
@@ -123,8 +149,7 @@ class Solver {
     g.mass_fraction = contents[i] * molar_mass;
     Molality all = Molality{};
     for (const auto& b : contents) all += b;
-    const auto water = from_si<Molality>(1.0 / m_.water_molar_mass.at(nullptr).value());
-    g.mole_fraction = contents[i] / (water + all);
+    g.mole_fraction = contents[i] / (liquid_.particles + all);
     g.partial_pressure = DaltonsLaw{}(mixture.shares[i], p, vapour);
     return g;
   }
@@ -134,7 +159,7 @@ class Solver {
 
   // The chain of one gas's content at a pressure over a mixture.
   Molality trace_content(Temperature t, const Shares& shares, Pressure p, std::size_t gas) {
-    const auto at = at_temperature(m_, t, {trace_, gas, &shares});
+    const auto at = at_temperature(m_, liquid_, t, {trace_, gas, &shares});
     return content(trace_, m_, at, mix(m_, at, shares), p, gas);
   }
 
@@ -169,9 +194,20 @@ class Solver {
 
   // ---- saturation -------------------------------------------------------------------------------
 
+  // Where the contact is known without the targets, they only judge: one that nothing can reach is
+  // no reason to answer nothing.
   Maybe answer_saturation() {
+    const bool only_judge =
+        c_.contact.known == Known::temperature_pressure || !c_.content_from_target;
     for (const auto& target : c_.targets) {
-      if (auto no = saturation_of(target)) return no;
+      auto no = saturation_of(target);
+      if (no && !only_judge) return no;
+      if (no) {
+        SaturationFigures s;
+        s.gas = m_.gases[target.gas].name;
+        s.unreachable = no->code;
+        answer_.saturation.push_back(s);
+      }
     }
     if (c_.targets.empty() && c_.contact.content) return saturation_of(*c_.contact.content);
     return std::nullopt;
@@ -181,11 +217,12 @@ class Solver {
     SaturationFigures s;
     s.gas = m_.gases[target.gas].name;
     if (c_.contact.known == Known::pressure_content) {
-      const auto found =
-          temperature_for(m_, contact_.shares, contact_.pressure, target.gas, molality(target));
+      const auto found = temperature_for(m_, liquid_, contact_.shares, contact_.pressure,
+                                         target.gas, molality(target));
       if (const auto* no = refused(found)) return *no;
       s.temperature = std::get<Temperature>(found);
       answer_.saturation.push_back(s);
+      if (trace_ != nullptr) trace_temperature(s, target.gas);
       return std::nullopt;
     }
     const auto found =
@@ -199,6 +236,13 @@ class Solver {
       trace_pressure("saturation." + std::string(s.gas) + ".pressure_gauge", target.gas, p);
     }
     return std::nullopt;
+  }
+
+  void trace_temperature(const SaturationFigures& s, std::size_t gas) {
+    trace_->begin("saturation." + std::string(s.gas) + ".temperature");
+    const auto t = s.temperature.value;
+    const auto b = trace_content(t, contact_.shares, contact_.pressure, gas);
+    apply(trace_, SolvedTemperature{t}, b, contact_.pressure);
   }
 
   // ---- container --------------------------------------------------------------------------------
@@ -221,8 +265,11 @@ class Solver {
     closing.contents = contact_.contents;
     closing.fill = c_.container->fill.now();
     closing.brimful = c_.container->brimful.now();
-    filling_ = close(m_, closing);
-    const auto found = equilibrium(m_, filling_, closing.temperature);
+    if (closing.pressure <= contact_.at.vapour) {
+      return Refusal{RefusalCode::boils, closing.pressure.value(), contact_.at.vapour.value()};
+    }
+    filling_ = close(m_, liquid_, closing);
+    const auto found = equilibrium(m_, liquid_, filling_, closing.temperature);
     if (const auto* no = refused(found)) return *no;
     closed_ = std::get<ClosedState>(found);
     answer_.container.push_back(container_figures(*closed_));
@@ -236,7 +283,8 @@ class Solver {
     f.pressure_absolute = state.pressure;
     f.pressure_gauge = gauge(state.pressure, contact_.ambient);
     f.ullage = state.headspace / filling_.brimful;
-    f.vapour = state.at.vapour;
+    f.vapour = state.at.vapours.water;
+    if (liquid_.x_ethanol.value() > 0) f.ethanol = state.at.vapours.ethanol;
     for (std::size_t i = 0; i < m_.size(); ++i) {
       if (c_.in_container[i] == 0) continue;
       f.gases.push_back(
@@ -247,12 +295,24 @@ class Solver {
 
   void trace_container(const ClosedState& state) {
     trace_->begin("container.at.0.pressure_gauge");
-    const std::size_t gas = c_.co2 < m_.size() ? c_.co2 : 0;
-    const auto at = at_temperature(m_, state.at.t, {trace_, gas, &state.mixture.shares, true});
-    const auto b = content(trace_, m_, at, mix(m_, at, state.mixture.shares), state.pressure, gas);
-    gas_in_headspace(trace_, m_, state, state.pressure);
+    const auto b = trace_state(state);
     const auto p = apply(trace_, SolvedPressure{state.pressure}, b, state.at.t);
     apply(trace_, AbsoluteToGauge{}, p, ambient(trace_));
+  }
+
+  // Every gas of a closed state, and the gas in its headspace; returns the content of the gas that
+  // leads it (CO2 where there is some).
+  Molality trace_state(const ClosedState& state) {
+    Molality leading{};
+    const auto& shares = state.mixture.shares;
+    for (std::size_t i = 0; i < m_.size(); ++i) {
+      if (c_.in_container[i] == 0) continue;
+      const auto at = at_temperature(m_, liquid_, state.at.t, {trace_, i, &shares, true});
+      const auto b = content(trace_, m_, at, mix(m_, at, shares), state.pressure, i);
+      if (leading.value() == 0 || i == m_.co2) leading = b;
+    }
+    gas_in_headspace(trace_, m_, state, state.pressure);
+    return leading;
   }
 
   // ---- opening ----------------------------------------------------------------------------------
@@ -263,16 +323,17 @@ class Solver {
     if (c_.container) {
       ClosedState state = *closed_;
       if (wanted) {
-        const auto found = equilibrium(m_, filling_, wanted->now());
+        const auto found = equilibrium(m_, liquid_, filling_, wanted->now());
         if (const auto* no = refused(found)) return *no;
         state = std::get<ClosedState>(found);
       }
+      if (trace_ != nullptr) opened_state_ = state;
       opened = open_package(m_, filling_, state, contact_.ambient, c_.air);
     } else {
       const auto t = wanted ? wanted->now() : contact_.at.t;
-      opened = open_liquid(m_, at_temperature(m_, t), contact_.contents, litre());
+      opened = open_liquid(m_, at_temperature(m_, liquid_, t), contact_.contents, litre());
     }
-    if (const auto no = pressure_refusal(m_, opened.at, contact_.ambient)) return no;
+    if (const auto no = pressure_refusal(m_, opened.at, c_.air, contact_.ambient)) return no;
     answer_.opening_temperature = opened.at.t;
     for (std::size_t i = 0; i < m_.size(); ++i) {
       if (c_.in_container[i] != 0 || c_.in_contact[i] != 0) answer_losses(opened, i);
@@ -286,7 +347,7 @@ class Solver {
   }
 
   void answer_losses(const Opened& opened, std::size_t gas) {
-    const bool bubbles = gas == c_.co2;
+    const bool bubbles = gas == m_.co2;
     LossFigures loss;
     if (!bubbles) loss.gas = m_.gases[gas].name;
     loss.headspace_loss = headspace_loss(nullptr, m_, opened, gas);
@@ -300,23 +361,26 @@ class Solver {
     const std::string at =
         bubbles ? "opening." : "opening." + std::string(m_.gases[gas].name) + ".";
     trace_->begin(at + "headspace_loss");
+    if (opened_state_) trace_state(*opened_state_);
     headspace_loss(trace_, m_, opened, gas);
     if (bubbles) {
       trace_->begin(at + "fizz_loss");
-      at_temperature(m_, opened.at.t, {trace_, gas, nullptr});
+      at_temperature(m_, liquid_, opened.at.t, {trace_, gas, nullptr});
       fizz_loss(trace_, m_, opened, contact_.ambient, gas);
     }
     trace_->begin(at + "flat_loss");
-    at_temperature(m_, opened.at.t, {trace_, gas, &c_.air});
+    at_temperature(m_, liquid_, opened.at.t, {trace_, gas, &c_.air});
     flat_loss(trace_, m_, opened, contact_.ambient, c_.air, gas, bubbles);
   }
 
   const Case& c_;
   const Medium& m_;
   Trace* trace_;
+  Liquid liquid_;
   ContactState contact_;
   Filling filling_;
   std::optional<ClosedState> closed_;
+  std::optional<ClosedState> opened_state_;  // for the trace
   Answer answer_;
 };
 
@@ -325,57 +389,90 @@ std::string bar(double pascal) {
                      significant(in_unit(pascal, *find_unit("bar", Dimension::pressure)), 4));
 }
 
+std::string celsius(double kelvin) {
+  return fmt::format("{} °C",
+                     significant(in_unit(kelvin, *find_unit("°C", Dimension::temperature)), 4));
+}
+
+Finding refusal_finding(std::string code, std::string message, std::string expected) {
+  Finding f;
+  f.code = std::move(code);
+  f.message = std::move(message);
+  f.expected = std::move(expected);
+  return f;
+}
+
+Finding explain_boiling(const Refusal& r) {
+  if (r.value <= 0) {
+    return refusal_finding("below-vacuum",
+                           "a gauge reading that low lies below a vacuum at this ambient pressure",
+                           "a reading above minus the ambient pressure");
+  }
+  const std::string_view where = r.asked_by == AskedBy::closing   ? "when the package is closed, "
+                                 : r.asked_by == AskedBy::opening ? "when it is opened, "
+                                                                  : "";
+  return refusal_finding("boils",
+                         fmt::format("{}at {} the liquid boils: its own vapour pressure is {}",
+                                     where, bar(r.value), bar(r.bound)),
+                         r.asked_by == AskedBy::contact ? "a higher pressure or a lower temperature"
+                                                        : "a lower temperature");
+}
+
 }  // namespace
 
 OrRefusal<Answer> solve(const Case& c, Trace* trace) { return Solver(c, trace).run(); }
 
-Finding explain(const Refusal& refusal) {
-  Finding f;
-  switch (refusal.code) {
-    case RefusalCode::boils:
-      if (refusal.value <= 0) {
-        f.code = "below-vacuum";
-        f.message = "a gauge reading that low lies below a vacuum at this ambient pressure";
-        f.expected = "a reading above minus the ambient pressure";
-        break;
-      }
-      f.code = "boils";
-      f.message = fmt::format("at {} the liquid boils: its own vapour pressure is {}",
-                              bar(refusal.value), bar(refusal.bound));
-      f.expected = "a higher pressure or a lower temperature";
-      break;
+Finding explain(const Refusal& r) {
+  switch (r.code) {
+    case RefusalCode::boils: return explain_boiling(r);
+    case RefusalCode::temperature_beyond_model:
+      return refusal_finding(
+          "temperature-beyond-model",
+          fmt::format("{} is beyond what the laws of this liquid may be used for, which end at {}",
+                      celsius(r.value), celsius(r.bound)),
+          "a temperature between freezing and boiling");
     case RefusalCode::pressure_beyond_model:
-      f.code = "pressure-beyond-model";
-      f.message = fmt::format("a pressure of {} or more is beyond the gas law, which ends at {}",
-                              bar(refusal.value), bar(refusal.bound));
-      f.expected = "a lower pressure, content, temperature or fill";
-      break;
+      return refusal_finding(
+          "pressure-beyond-model",
+          fmt::format("a pressure of {} or more is beyond the gas law, which ends at {}",
+                      bar(r.value), bar(r.bound)),
+          "a lower pressure, content, temperature or fill");
+    case RefusalCode::condenses:
+      return refusal_finding("condenses",
+                             fmt::format("CO2 would condense: its partial pressure {} is not "
+                                         "below {}",
+                                         bar(r.value), bar(r.bound)),
+                             "a lower pressure or a warmer liquid");
     case RefusalCode::no_pressure_holds:
-      f.code = "no-pressure-holds";
-      f.message = fmt::format("no pressure up to {} dissolves that much", bar(refusal.bound));
-      f.expected = "a lower content, a colder liquid, or more of that gas in the headspace";
-      break;
+      return refusal_finding("no-pressure-holds",
+                             fmt::format("no pressure up to {} dissolves that much", bar(r.bound)),
+                             "a lower content, a colder liquid, or more of that gas in the "
+                             "headspace");
     case RefusalCode::no_temperature_holds:
-      f.code = "no-temperature-holds";
-      f.message = fmt::format(
-          "no liquid temperature from {} degC up holds that content at that pressure",
-          significant(in_unit(refusal.bound, *find_unit("degC", Dimension::temperature)), 3));
-      f.expected = "a higher pressure or a lower content";
-      break;
+      return refusal_finding(
+          "no-temperature-holds",
+          fmt::format("even at {} the liquid holds less than that at this pressure",
+                      celsius(r.bound)),
+          "a higher pressure or a lower content");
+    case RefusalCode::too_little_everywhere:
+      return refusal_finding(
+          "too-little-everywhere",
+          fmt::format("up to {} the liquid holds more than that at this pressure",
+                      celsius(r.bound)),
+          "a lower pressure or a higher content");
     case RefusalCode::container_without_space:
-      f.code = "container-without-space";
-      f.message =
-          "the liquid fills the whole container: no headspace is left and its pressure has "
-          "no upper bound";
-      f.expected = "a smaller fill";
-      break;
+      return refusal_finding("container-without-space",
+                             "the liquid fills the whole container: no headspace is left and its "
+                             "pressure has no upper bound",
+                             "a smaller fill");
     case RefusalCode::nothing_of_that_gas:
-      f.code = "nothing-of-that-gas";
-      f.message = "a content is asked of a gas that the headspace does not hold";
-      f.expected = "a share of that gas under [gas]";
-      break;
+      return refusal_finding("nothing-of-that-gas",
+                             "a content is asked of a gas that the headspace does not hold",
+                             "a share of that gas under [gas]");
+    case RefusalCode::no_number: break;
   }
-  return f;
+  return refusal_finding("no-number", "these inputs lead to no finite figure",
+                         "values that can occur in a plant");
 }
 
 }  // namespace capsigh

@@ -104,9 +104,9 @@ Amount gas_in_headspace(Trace* trace, const Medium& m, const ClosedState& state,
                compressibility(trace, m, state.at, state.mixture, p), state.at.t);
 }
 
-Filling close(const Medium& m, const Closing& closing) {
+Filling close(const Medium& m, const Liquid& liquid, const Closing& closing) {
   ClosedState state;
-  state.at = at_temperature(m, closing.temperature);
+  state.at = at_temperature(m, liquid, closing.temperature);
   state.mixture = mix(m, state.at, closing.headspace);
   state.headspace = closing.brimful - closing.fill;
   Filling filling;
@@ -121,8 +121,9 @@ Filling close(const Medium& m, const Closing& closing) {
   return filling;
 }
 
-OrRefusal<ClosedState> equilibrium(const Medium& m, const Filling& filling, Temperature t) {
-  const AtTemperature at = at_temperature(m, t);
+OrRefusal<ClosedState> equilibrium(const Medium& m, const Liquid& liquid, const Filling& filling,
+                                   Temperature t) {
+  const AtTemperature at = at_temperature(m, liquid, t);
   TrialPressure trial(m, filling, at);
   const auto residual = [&](double pascal) { return trial(pascal); };
   // Just above the vapour pressure the shares needed to hold the moles exceed one; at the limit of

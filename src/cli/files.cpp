@@ -43,6 +43,27 @@ bool write_all(std::FILE* file, const std::string& text) {
   return std::fwrite(text.data(), 1, text.size(), file) == text.size() && std::fflush(file) == 0;
 }
 
+// Writes beside the place and renames over it, so that the file is whole or absent.
+std::optional<Finding> replace(const std::string& place, const std::string& path,
+                               const std::string& text) {
+  const std::string partial = fmt::format("{}.{}.partial", place, ::getpid());
+  {
+    const File file(std::fopen(partial.c_str(), "wb"));
+    if (!file) return failure(path, "cannot be written", errno);
+    if (!write_all(file.get(), text)) {
+      const int error = errno;
+      std::remove(partial.c_str());
+      return failure(path, "cannot be written", error);
+    }
+  }
+  if (std::rename(partial.c_str(), place.c_str()) != 0) {
+    const int error = errno;
+    std::remove(partial.c_str());
+    return failure(path, "cannot be written", error);
+  }
+  return std::nullopt;
+}
+
 }  // namespace
 
 Outcome<std::string> read_input(const std::string& path) {
@@ -66,22 +87,17 @@ std::optional<Finding> deliver(const std::string& text, const std::string& path)
     if (write_all(stdout, text)) return std::nullopt;
     return failure("standard output", "cannot be written", errno);
   }
-  const std::string partial = fmt::format("{}.{}.partial", path, ::getpid());
-  {
-    const File file(std::fopen(partial.c_str(), "wb"));
-    if (!file) return failure(path, "cannot be written", errno);
-    if (!write_all(file.get(), text)) {
-      const int error = errno;
-      std::remove(partial.c_str());
-      return failure(path, "cannot be written", error);
-    }
+  std::error_code unknown;
+  const auto target = std::filesystem::weakly_canonical(path, unknown);
+  const std::string place = unknown ? path : target.string();
+  // A pipe or a device is a stream: it is written to, not replaced.
+  const auto status = std::filesystem::status(place, unknown);
+  if (std::filesystem::exists(status) && !std::filesystem::is_regular_file(status)) {
+    const File file(std::fopen(place.c_str(), "wb"));
+    if (file && write_all(file.get(), text)) return std::nullopt;
+    return failure(path, "cannot be written", errno);
   }
-  if (std::rename(partial.c_str(), path.c_str()) != 0) {
-    const int error = errno;
-    std::remove(partial.c_str());
-    return failure(path, "cannot be written", error);
-  }
-  return std::nullopt;
+  return replace(place, path, text);
 }
 
 }  // namespace capsigh::cli

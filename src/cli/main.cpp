@@ -2,6 +2,7 @@
 #include <fmt/format.h>
 
 #include <CLI/CLI.hpp>
+#include <algorithm>
 #include <cstdio>
 #include <exception>
 
@@ -105,7 +106,11 @@ int run(int argc, char** argv) {
   }
   Outcome<Library> library{built_in_library(), {}};
   if (!constants_directory.empty()) library = load_library(constants_directory);
-  if (!library) return fail(library.findings, bad_input);
+  if (!library) {
+    const bool unreadable = std::any_of(library.findings.begin(), library.findings.end(),
+                                        [](const Finding& f) { return f.code == "unreadable"; });
+    return fail(library.findings, unreadable ? system_failed : bad_input);
+  }
   if (report_command->parsed()) return run_report(arguments, *library);
   return run_constants(name, as, out, *library);
 }

@@ -30,18 +30,34 @@ const Source* Library::source(std::string_view key) const {
   return it != sources_.end() && it->key == key ? &*it : nullptr;
 }
 
+namespace {
+
+// A record of a directory must offer what the program takes from the built-in one.
+bool same_shape(const Record& a, const Record& b) {
+  return a.form == b.form && a.values.size() == b.values.size() &&
+         a.parts.size() == b.parts.size() && a.limit.size() == b.limit.size() && a.unit == b.unit &&
+         a.range.empty() == b.range.empty();
+}
+
+}  // namespace
+
 Outcome<Library> load_library(const std::string& directory) {
   auto store = std::make_shared<RecordStore>();
   auto findings = read_directory(*store, directory);
   if (has_error(findings)) return {{}, findings};
   for (const auto& record : built_in_library().records()) {
-    const bool present = std::any_of(store->records().begin(), store->records().end(),
-                                     [&](const Record& r) { return r.key == record.key; });
-    if (present) continue;
+    const auto it = std::find_if(store->records().begin(), store->records().end(),
+                                 [&](const Record& r) { return r.key == record.key; });
+    const bool missing = it == store->records().end();
+    if (!missing && same_shape(*it, record)) continue;
     Finding f;
-    f.code = "record-missing";
-    f.message = "the record '" + std::string(record.key) + "' is missing";
-    f.expected = "the whole set of tables, not a patch";
+    f.code = missing ? "record-missing" : "record-shape";
+    f.message = "the record '" + std::string(record.key) +
+                (missing ? "' is missing" : "' has another form than the program expects");
+    f.expected = missing ? "the whole set of tables, not a patch"
+                         : "form '" + std::string(record.form) + "' with " +
+                               std::to_string(record.values.size()) + " values" +
+                               (record.limit.empty() ? "" : " and a limit");
     f.place = Place{directory, 0, 0, 1, ""};
     findings.push_back(f);
   }

@@ -133,6 +133,22 @@ std::optional<Finding> too_deep(std::string_view text, const std::string& file, 
   return std::nullopt;
 }
 
+// Every place keeps its line; thousands of values on one endless line would cost gigabytes.
+std::optional<Finding> too_wide(std::string_view text, const std::string& file, std::size_t limit) {
+  for (std::size_t start = 0; start < text.size();) {
+    const std::size_t end = std::min(text.find('\n', start), text.size());
+    if (end - start > limit) {
+      Finding f;
+      f.code = "line-too-long";
+      f.message = fmt::format("a line has {} bytes; at most {} are read", end - start, limit);
+      f.place = Place{file, 0, 0, 1, ""};
+      return f;
+    }
+    start = end + 1;
+  }
+  return std::nullopt;
+}
+
 }  // namespace
 
 Place place_at(std::string_view text, const std::string& file, std::size_t offset) {
@@ -160,6 +176,7 @@ std::optional<Finding> guard(std::string_view text, const std::string& file,
     return f;
   }
   if (auto f = not_text(text, file)) return f;
+  if (auto f = too_wide(text, file, limits.line)) return f;
   return too_deep(text, file, limits.depth);
 }
 

@@ -37,6 +37,27 @@ HenryConstant HighTemperatureHenry::operator()(Temperature t, MassDensity water,
   return water / (water_molar_mass * per_mole_fraction(t, vapour));
 }
 
+double MoleFractionHenry::mole_fraction(Temperature t) const {
+  const double x = t.kelvin() / theta;
+  return std::exp(a[0] + a[1] / x + a[2] * std::log(x) + a[3] * x);
+}
+
+HenryConstant MoleFractionHenry::operator()(Temperature t, MassDensity water, Pressure) const {
+  const double x = mole_fraction(t);
+  return x / (1.0 - x) * water / (water_molar_mass * partial_pressure);
+}
+
+HenryConstant TwoTermHenry::operator()(Temperature t, MassDensity, Pressure) const {
+  return from_si<HenryConstant>(factor * scale * k0 *
+                                std::exp(d * (1.0 / t.kelvin() - 1.0 / reference_temperature)));
+}
+
+MolarEnergy EnthalpyOfSolution::operator()(HenryConstant k_cold, Temperature cold,
+                                           HenryConstant k_warm, Temperature warm) const {
+  const double ratio = std::log(k_cold.value() / k_warm.value());
+  return from_si<MolarEnergy>(-r.value() * ratio / (1.0 / cold.kelvin() - 1.0 / warm.kelvin()));
+}
+
 double smoothstep(double x, double from, double to) {
   const double s = std::clamp((x - from) / (to - from), 0.0, 1.0);
   return s * s * (3.0 - 2.0 * s);

@@ -23,6 +23,17 @@ MolarVolume InverseTemperatureVirial::operator()(Temperature t) const {
   return from_si<MolarVolume>(factor * polynomial(a, reference_temperature / t.kelvin() - 1.0));
 }
 
+MolarVolume TsonopoulosVirial::operator()(Temperature t) const {
+  const double x = critical_temperature.kelvin() / t.kelvin();  // 1/Tr
+  const double x2 = x * x;
+  const double x3 = x2 * x;
+  const double x8 = x3 * x3 * x2;
+  const double f0 = 0.1445 - 0.330 * x - 0.1385 * x2 - 0.0121 * x3 - 0.000607 * x8;
+  const double f1 = 0.0637 + 0.331 * x2 - 0.423 * x3 - 0.008 * x8;
+  return from_si<MolarVolume>(r.value() * critical_temperature.kelvin() /
+                              critical_pressure.value() * (f0 + acentric_factor * f1));
+}
+
 MolarVolume CrossVirialExcess::operator()(Temperature t) const {
   return from_si<MolarVolume>(factor * (d0 + d1 * t.kelvin()));
 }

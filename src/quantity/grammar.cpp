@@ -15,13 +15,24 @@ namespace {
 
 using enum Dimension;
 
-// Factors are exact by definition: the pound-force per square inch from the international pound
-// (0.45359237 kg), the inch (0.0254 m) and the standard acceleration of free fall (9.80665 m/s²);
-// the degree Fahrenheit from 5/9 K and 459.67 °R; the atmosphere 101325 Pa.
-constexpr double kPsi = 0.45359237 * 9.80665 / (0.0254 * 0.0254);
+// Factors are exact by definition: the international pound (0.45359237 kg) and inch (0.0254 m), the
+// standard acceleration of free fall (9.80665 m/s²), the atmosphere (101325 Pa), the conventional
+// millimetre of mercury (13.5951 g/cm³), the US gallon (231 in³), the imperial gallon (4.54609 L),
+// the US beer barrel (31 US gal) and the UK barrel (36 imperial gal), and the degree Fahrenheit
+// (5/9 K from 459.67 below its zero).
+constexpr double kPound = 0.45359237;
+constexpr double kInch = 0.0254;
+constexpr double kFoot = 12 * kInch;
+constexpr double kPsi = kPound * 9.80665 / (kInch * kInch);
+constexpr double kMercury = 13595.1 * 9.80665;  // Pa per metre
+constexpr double kUsGallon = 231 * kInch * kInch * kInch;
+constexpr double kImperialGallon = 4.54609e-3;
 constexpr double kFahrenheit = 5.0 / 9.0;
 constexpr double kCelsiusZero = 273.15;
 constexpr double kFahrenheitZero = 459.67 * 5.0 / 9.0;
+constexpr double kMinute = 60;
+constexpr double kHour = 3600;
+constexpr double kDay = 24 * kHour;
 
 constexpr auto kUnits = std::to_array<Unit>({
     {"bar", pressure, 1e5},
@@ -36,6 +47,8 @@ constexpr auto kUnits = std::to_array<Unit>({
     {"psig", pressure, kPsi, 0, Reference::gauge},
     {"psia", pressure, kPsi, 0, Reference::absolute},
     {"atm", pressure, 101325},
+    {"mmHg", pressure, kMercury * 1e-3},
+    {"inHg", pressure, kMercury* kInch},
     {"degC", temperature, 1, kCelsiusZero},
     {"°C", temperature, 1, kCelsiusZero},
     {"degF", temperature, kFahrenheit, kFahrenheitZero},
@@ -47,23 +60,39 @@ constexpr auto kUnits = std::to_array<Unit>({
     {"degF", temperature_difference, kFahrenheit},
     {"°F", temperature_difference, kFahrenheit},
     {"m3", volume, 1},
+    {"m³", volume, 1},
     {"hL", volume, 1e-1},
     {"L", volume, 1e-3},
     {"cL", volume, 1e-5},
     {"mL", volume, 1e-6},
+    {"US gal", volume, kUsGallon},
+    {"US fl oz", volume, kUsGallon / 128},
+    {"US bbl", volume, 31 * kUsGallon},
+    {"imp gal", volume, kImperialGallon},
+    {"imp fl oz", volume, kImperialGallon / 160},
+    {"UK bbl", volume, 36 * kImperialGallon},
     {"m", length, 1},
     {"cm", length, 1e-2},
     {"mm", length, 1e-3},
-    {"ft", length, 0.3048},
+    {"in", length, kInch},
+    {"ft", length, kFoot},
     {"kg", mass, 1},
     {"g", mass, 1e-3},
     {"mg", mass, 1e-6},
+    {"ug", mass, 1e-9},
+    {"lb", mass, kPound},
+    {"oz", mass, kPound / 16},
     {"%", fraction, 1e-2},
     {"vol", gas_volumes, 1},
     {"g/L", mass_concentration, 1},
     {"mg/L", mass_concentration, 1e-3},
     {"ug/L", mass_concentration, 1e-6},
+    {"µg/L", mass_concentration, 1e-6},
     {"g/100 mL", mass_concentration, 10},
+    {"kg/hL", mass_concentration, 10},
+    {"kg/m3", density, 1},
+    {"g/mL", density, 1e3},
+    {"g/cm3", density, 1e3},
     {"mol/L", amount_concentration, 1e3},
     {"mmol/L", amount_concentration, 1},
     {"mol/kg", molality, 1},
@@ -71,6 +100,33 @@ constexpr auto kUnits = std::to_array<Unit>({
     {"% w/w", mass_fraction, 1e-2},
     {"g/kg", mass_fraction, 1e-3},
     {"mg/kg", mass_fraction, 1e-6},
+    {"ppm", mass_fraction, 1e-6},
+    {"ppb", mass_fraction, 1e-9},
+    {"Brix", mass_fraction, 1e-2},
+    {"°Bx", mass_fraction, 1e-2},
+    {"Plato", mass_fraction, 1e-2},
+    {"°P", mass_fraction, 1e-2},
+    {"% v/v", volume_fraction, 1e-2},
+    {"% vol", volume_fraction, 1e-2},
+    {"s", duration, 1},
+    {"min", duration, kMinute},
+    {"h", duration, kHour},
+    {"d", duration, kDay},
+    {"wk", duration, 7 * kDay},
+    {"m2", area, 1},
+    {"cm2", area, 1e-4},
+    {"kg/h", mass_flow, 1 / kHour},
+    {"g/s", mass_flow, 1e-3},
+    {"lb/h", mass_flow, kPound / kHour},
+    {"m3/h", volume_flow, 1 / kHour},
+    {"hL/h", volume_flow, 1e-1 / kHour},
+    {"L/min", volume_flow, 1e-3 / kMinute},
+    {"ft3/min", volume_flow, kFoot* kFoot* kFoot / kMinute},
+    {"m3/h normal", normal_volume_flow, 1 / kHour},
+    {"1/s", rate, 1},
+    {"1/min", rate, 1 / kMinute},
+    {"1/h", rate, 1 / kHour},
+    {"1/d", rate, 1 / kDay},
 });
 
 constexpr bool is_space(char c) { return c == ' ' || c == '\t'; }
@@ -126,6 +182,17 @@ std::size_t plus_minus_length(std::string_view rest) {
   return 0;
 }
 
+// The second number of a fraction such as 3/4 (pipe sizes), or 0.
+double read_divisor(Scanner& in) {
+  const std::string_view rest = in.rest();
+  if (rest.size() < 2 || rest[0] != '/' || !is_digit(rest[1])) return 0;
+  double divisor = 0;
+  const auto [end, error] = std::from_chars(rest.data() + 1, rest.data() + rest.size(), divisor);
+  if (error != std::errc{} || !(divisor > 0)) return 0;
+  in.at += static_cast<std::size_t>(end - rest.data());
+  return divisor;
+}
+
 std::variant<double, GrammarFault> read_number(Scanner& in, const Wanted& wanted) {
   in.skip_spaces();
   const std::size_t start = in.at;
@@ -153,6 +220,7 @@ std::variant<double, GrammarFault> read_number(Scanner& in, const Wanted& wanted
                  fmt::format("'{}' does not begin with a number", rest), wanted);
   }
   in.at = start + length;
+  if (const double divisor = read_divisor(in); divisor > 0) value /= divisor;
   const bool comma =
       in.at + 1 < in.text.size() && in.text[in.at] == ',' && is_digit(in.text[in.at + 1]);
   if (comma) {
@@ -205,6 +273,10 @@ GrammarFault unit_fault(const std::string& unit_text, std::size_t start, std::si
                         const Wanted& wanted) {
   if (unit_text.empty()) {
     return fault(start, 1, "unit-missing", "the number has no unit", wanted);
+  }
+  if (unit_text == "°") {
+    return fault(start, length, "degree-of-what", "'°' alone does not say which degree is meant",
+                 wanted);
   }
   const auto* elsewhere = std::find_if(kUnits.begin(), kUnits.end(),
                                        [&](const Unit& u) { return u.text == unit_text; });
@@ -289,6 +361,14 @@ std::string_view dimension_name(Dimension d) {
     case amount_concentration: return "amount concentration";
     case molality: return "molality";
     case mass_fraction: return "mass fraction";
+    case volume_fraction: return "volume fraction";
+    case density: return "density";
+    case duration: return "time";
+    case area: return "area";
+    case mass_flow: return "mass flow";
+    case volume_flow: return "volume flow";
+    case normal_volume_flow: return "normal volume flow of gas";
+    case rate: return "rate";
   }
   return "quantity";
 }
@@ -315,7 +395,14 @@ std::variant<ParsedQuantity, GrammarFault> parse_quantity(std::string_view text,
   const Unit* unit = unit_among(unit_text, wanted.dimensions);
   if (unit == nullptr) return unit_fault(unit_text, start, length, wanted);
   q.dimension = unit->dimension;
-  if (unit->reference != Reference::none) q.reference = unit->reference;
+  if (unit->reference != Reference::none) {
+    if (q.reference != Reference::none && q.reference != unit->reference) {
+      return fault(start, length, "reference-contradicts",
+                   fmt::format("'{}' and the word behind it contradict each other", unit->text),
+                   wanted);
+    }
+    q.reference = unit->reference;
+  }
   q.value = std::get<double>(number) * unit->factor + unit->offset;
   if (!std::isfinite(q.value)) {
     return fault(0, text.size(), "number-out-of-range", "the quantity is too large", wanted);

@@ -56,8 +56,31 @@ class Reader {
     const Node* node = table(top, "liquid");
     if (node == nullptr) return;
     Section s = section(*node, "liquid");
-    recipe_.like = s.text("like", "water");
+    LiquidSection liquid;
+    liquid.place = node->place;
+    liquid.like = s.text("like", "soft drink");
+    liquid.basis = s.text("basis", "true");
+    liquid.relation = s.text("relation", "ASBC");
+    liquid.volume_basis = s.text("volume_basis", "real");
+    for (const std::string key : {"brix", "sucrose", "glucose", "fructose", "extract", "ethanol",
+                                  "citric_acid", "glycerol"}) {
+      if (auto solute = s.solute(key)) liquid.solutes.push_back(std::move(*solute));
+    }
+    liquid.density = s.density("density", "1040 kg/m3");
+    if (const Member* member = s.take("salts")) {
+      if (member->value.kind == Node::Kind::table) {
+        for (auto& salt : section(member->value, "liquid.salts").salts()) {
+          liquid.solutes.push_back(std::move(salt));
+        }
+      } else {
+        s.complain(
+            member->value.place, "not-a-section",
+            fmt::format("'liquid.salts' is {}, not a {{ }} group", kind_name(member->value.kind)),
+            "a { } group of formulas and amounts", "salts = { NaCl = \"120 mg/L\" }");
+      }
+    }
     s.finish();
+    recipe_.liquid = std::move(liquid);
   }
 
   void read_gas(Section& top) {

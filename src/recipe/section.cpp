@@ -178,11 +178,62 @@ std::optional<LocatedText> Section::text(const std::string& key, std::string_vie
   return LocatedText{member->value.text, member->value.place};
 }
 
+std::optional<Given<MassDensity>> Section::density(const std::string& key,
+                                                   std::string_view example) {
+  const Member* member = take(key);
+  if (member == nullptr) return std::nullopt;
+  return given<MassDensity>(*member, Dimension::density, example, false, Sign::positive);
+}
+
+GivenSolute Section::amount_of(const Member& member, std::span<const Dimension> dimensions,
+                               std::string_view example) {
+  GivenSolute s;
+  s.name = {member.key, member.key_place};
+  s.amount.source = {member.value.text, member.value.place};
+  if (const auto q = quantity(member, dimensions, example, false, Sign::not_negative)) {
+    switch (q->dimension) {
+      case Dimension::volume_fraction: s.measure = GivenSoluteMeasure::volume_fraction; break;
+      case Dimension::mass_concentration: s.measure = GivenSoluteMeasure::mass_concentration; break;
+      case Dimension::amount_concentration:
+        s.measure = GivenSoluteMeasure::amount_concentration;
+        break;
+      default: s.measure = GivenSoluteMeasure::mass_fraction;
+    }
+    s.amount.value = Fraction(q->value);
+    if (q->plus_minus) s.amount.plus_minus = Fraction(*q->plus_minus);
+  }
+  return s;
+}
+
+std::optional<GivenSolute> Section::solute(const std::string& key) {
+  const Member* member = take(key);
+  if (member == nullptr) return std::nullopt;
+  constexpr std::array brix{Dimension::mass_fraction, Dimension::fraction};
+  constexpr std::array ethanol{Dimension::volume_fraction, Dimension::mass_fraction,
+                               Dimension::mass_concentration};
+  constexpr std::array others{Dimension::mass_fraction, Dimension::mass_concentration,
+                              Dimension::amount_concentration};
+  if (key == "brix") return amount_of(*member, brix, "10.5 %");
+  if (key == "ethanol") return amount_of(*member, ethanol, "5 % v/v");
+  return amount_of(*member, others, key == "extract" ? "4.2 % w/w" : "12 g/L");
+}
+
+std::vector<GivenSolute> Section::salts() {
+  constexpr std::array dimensions{Dimension::mass_concentration, Dimension::amount_concentration,
+                                  Dimension::mass_fraction};
+  std::vector<GivenSolute> all;
+  for (const auto& member : table_.members) {
+    all.push_back(amount_of(member, dimensions, "120 mg/L"));
+    all.back().salt = true;
+  }
+  return all;
+}
+
 GivenContent Section::content(const Member& member) {
   GivenContent c;
   c.gas = {member.key, member.key_place};
   c.amount.source = {member.value.text, member.value.place};
-  if (const auto q = quantity(member, kContentDimensions, "3.7 vol", false, Sign::not_negative)) {
+  if (const auto q = quantity(member, kContentDimensions, "3.7 vol", false, Sign::positive)) {
     c.measure = measure_of(q->dimension);
     c.amount.value = Fraction(q->value);
     if (q->plus_minus) c.amount.plus_minus = Fraction(*q->plus_minus);

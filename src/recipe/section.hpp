@@ -30,6 +30,10 @@ class Section {
   std::optional<Given<Length>> length(const std::string& key, std::string_view example);
   std::optional<Given<Fraction>> share(const std::string& key, std::string_view example);
   std::optional<LocatedText> text(const std::string& key, std::string_view example);
+  std::optional<Given<MassDensity>> density(const std::string& key, std::string_view example);
+  std::optional<GivenSolute> solute(const std::string& key);
+  /// Every key of this section as an amount of the salt it names.
+  std::vector<GivenSolute> salts();
   /// Every key of this section as a content of the gas it names.
   std::vector<GivenContent> contents();
   /// Every key of this section as a share of the gas it names.
@@ -49,6 +53,8 @@ class Section {
   Given<Q> given(const Member& member, Dimension dimension, std::string_view example,
                  bool absolute_by_nature, Sign sign);
   GivenContent content(const Member& member);
+  GivenSolute amount_of(const Member& member, std::span<const Dimension> dimensions,
+                        std::string_view example);
   [[nodiscard]] std::string full_key(const std::string& key) const;
 
   const Node& table_;

@@ -10,22 +10,11 @@ namespace capsigh {
 namespace {
 
 using render_detail::columns;
+using render_detail::printable;
 
 std::string where(const Place& place) {
   if (place.line == 0) return place.file;
   return fmt::format("{}:{}:{}", place.file, place.line, place.column);
-}
-
-// A control character in a quoted line would act on the terminal, a broken byte garble it.
-std::string printable(std::string_view text) {
-  const bool whole = is_utf8(text);
-  std::string out;
-  for (const char c : text) {
-    const auto byte = static_cast<unsigned char>(c);
-    const bool broken = byte >= 0x80U && !whole;
-    out += broken ? '?' : (byte < 0x20U || byte == 0x7FU ? ' ' : c);
-  }
-  return out;
 }
 
 // The line of the file and carets under the offending text; long lines are cut around it.

@@ -98,6 +98,15 @@ Json one(const Report& report, bool with_trace) {
   each_figure(report.answer, [&](const FigurePath& path, const auto& figure, const JsonUnit& unit) {
     if (figure.asked) descend(j, path) = quantity(figure, unit);
   });
+  j["relation"] = report.relation;
+  j["second_opinion"] = Json::array();
+  for (const auto& o : report.second_opinion) {
+    j["second_opinion"].push_back(
+        {{"relation", o.relation},
+         {"quantity", o.quantity},
+         {"value", {{"value", for_machines(o.value)}, {"unit", o.unit.ucum}}},
+         {"difference", {{"value", for_machines(o.difference)}, {"unit", "%"}}}});
+  }
   j["budget"] = budget(report.budget);
   j["doubt_not_stated"] = report.doubt_not_stated;
   j["cautions"] = findings(report.cautions);

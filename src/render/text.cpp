@@ -10,6 +10,7 @@ namespace capsigh {
 namespace {
 
 using render_detail::padded;
+using render_detail::printable;
 using render_detail::wrapped;
 
 constexpr std::size_t kLabel = 30;
@@ -53,8 +54,9 @@ class TextReport {
   void section(std::string_view name) { out_ += fmt::format("\n{}\n", name); }
 
   void heading() {
-    out_ += r_.title.empty() ? "Untitled recipe\n" : r_.title + "\n";
-    for (const auto& [key, text] : r_.about) out_ += wrapped("  " + key + ": ", text);
+    out_ += r_.title.empty() ? "Untitled recipe\n" : printable(r_.title) + "\n";
+    for (const auto& [key, text] : r_.about)
+      out_ += wrapped("  " + printable(key) + ": ", printable(text));
     out_ += wrapped("  ", fmt::format("{} under {}. Figures are value ± U, expanded uncertainty, "
                                       "k = 2. A content is per litre of degassed liquid at 20 °C; "
                                       "vol is real gas at 0 °C and 1 atm.",
@@ -70,6 +72,34 @@ class TextReport {
          shown(a_.pressure_gauge, bar, " gauge"), shown(a_.pressure_absolute, bar, " abs"));
     line("Ambient pressure", shown(a_.ambient, unit("hPa", Dimension::pressure)));
     for (const auto& g : a_.gases) gas(g);
+    opinions();
+  }
+
+  // What the figures in the report are, and what they would be by another reading.
+  void opinions() {
+    if (r_.relation == "composition" && r_.second_opinion.empty()) return;
+    section(fmt::format("CO2 as read here: {}", basis_text(r_.relation)));
+    for (const auto& o : r_.second_opinion) {
+      const bool pressure = o.unit.ucum == json_unit::kilopascal.ucum;
+      const double si = o.value * o.unit.factor + o.unit.offset;
+      const auto& in = pressure ? unit("bar", Dimension::pressure)
+                       : o.unit.ucum == json_unit::celsius.ucum
+                           ? unit("°C", Dimension::temperature)
+                           : unit("vol", Dimension::gas_volumes);
+      line(basis_text(o.relation),
+           fmt::format("{} {}{}", significant(in_unit(si, in), 4), in.text,
+                       pressure ? " gauge" : ""),
+           fmt::format("{:+.1f} %", o.difference));
+    }
+  }
+
+  static std::string basis_text(const std::string& relation) {
+    if (relation == "composition") return "true, by composition";
+    if (relation == "water") return "as tested, as water would hold";
+    std::string name = relation;
+    std::transform(name.begin(), name.end(), name.begin(),
+                   [](unsigned char c) { return static_cast<char>(std::toupper(c)); });
+    return "as tested, by " + name;
   }
 
   // Gases that are there in traces are read in mg/L; volumes would be a row of zeros.
@@ -92,6 +122,7 @@ class TextReport {
       const auto& s = a_.saturation[i];
       const std::string content = i < r_.targets.size() ? r_.targets[i].second : "";
       const std::string label = fmt::format("{} {}", s.gas, content);
+      if (s.unreachable) line(label, "nothing brings it, see cautions");
       if (s.pressure_gauge.asked) {
         line(label, shown(s.pressure_gauge, bar, " gauge"),
              shown(s.pressure_absolute, bar, " abs"));
@@ -194,7 +225,7 @@ class TextReport {
     out_ += fmt::format("  recipe    {}\n  constants {}\n", r_.audit.recipe_digest,
                         r_.audit.constants_digest);
     for (const auto& [key, text] : r_.audit.inputs) {
-      out_ += wrapped("  " + padded(key, 26) + " ", text);
+      out_ += wrapped("  " + padded(printable(key), 26) + " ", printable(text));
     }
   }
 

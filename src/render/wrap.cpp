@@ -1,9 +1,22 @@
 #include "wrap.hpp"
 
+#include "capsigh/document/document.hpp"
+
 namespace capsigh::render_detail {
 
 namespace {
 constexpr std::size_t kPage = 80;
+}
+
+std::string printable(std::string_view text) {
+  const bool whole = is_utf8(text);
+  std::string out;
+  for (const char c : text) {
+    const auto byte = static_cast<unsigned char>(c);
+    const bool broken = byte >= 0x80U && !whole;
+    out += broken ? '?' : (byte < 0x20U || byte == 0x7FU ? ' ' : c);
+  }
+  return out;
 }
 
 std::size_t columns(std::string_view text) {

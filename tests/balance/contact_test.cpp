@@ -61,6 +61,17 @@ TEST_CASE("what cannot be answered is refused with its reason") {
         "no-pressure-holds");
   CHECK(only("pressure = \"1 bar abs\"\ndissolved = { CO2 = \"15 vol\" }\n") ==
         "no-temperature-holds");
+  CHECK(only("pressure = \"4 bar gauge\"\ndissolved = { CO2 = \"0.001 vol\" }\n") ==
+        "too-little-everywhere");
+  CHECK(only("temperature = \"1 K\"\npressure = \"2 bar gauge\"\n") == "temperature-beyond-model");
+  CHECK(only("temperature = \"-40 degC\"\npressure = \"15 bar abs\"\n") ==
+        "temperature-beyond-model");
+  CHECK(only("temperature = \"95 degC\"\npressure = \"1 bar gauge\"\naltitude = \"3000 m\"\n"
+             "[container]\nbrimful = \"1000 mL\"\nfill = \"500 mL\"\n") == "boils");
+  CHECK(only("temperature = \"4 degC\"\npressure = \"2 bar gauge ± 40 bar\"\n") ==
+        "doubt-too-wide");
+  CHECK(only("temperature = \"4 degC\"\npressure = \"2 bar gauge\"\naltitude = \"15000 m\"\n") ==
+        "impossible-value");
 }
 
 TEST_CASE("outside a range there is a caution with value and bounds, and a wider doubt") {
@@ -97,4 +108,44 @@ TEST_CASE("an ambient reduced to sea level is questioned beside its altitude") {
   CHECK(r.cautions[0].code == "ambient-against-altitude");
   CHECK(si_value(r.answer.ambient.value) == 101300);
   CHECK(answered(contact + "ambient = \"838 hPa\"\n").cautions.empty());
+}
+
+TEST_CASE("ranges are judged wherever a law is used") {
+  const auto says = [](const std::string& text, const std::string& record) {
+    bool said = false;
+    for (const auto& c : answered(text).cautions) said = said || c.message.find(record) == 0;
+    return said;
+  };
+  // A saturation temperature beyond the virials.
+  CHECK(
+      says("[contact]\npressure = \"6 bar gauge\"\ndissolved = { CO2 = \"8 g/L\" }\n"
+           "[target]\nCO2 = \"1 vol\"\n",
+           "virial.CO2"));
+  // Air that only the closed package brings in.
+  const std::string can = "[container]\nbrimful = \"345 mL\"\nfill = \"330 mL\"\n";
+  CHECK(says("[contact]\ntemperature = \"-1 degC\"\npressure = \"1 bar gauge\"\n" + can +
+                 "closed_at = { air = \"30 %\" }\n",
+             "henry.O2.rettich2000"));
+  // A package that is hot when it is opened.
+  CHECK(says("[contact]\ntemperature = \"4 degC\"\npressure = \"1.6 bar gauge\"\n" + can +
+                 "[opening]\ntemperature = \"70 degC\"\n",
+             "real_gas.second_virial"));
+}
+
+TEST_CASE("nitrogen has two temperatures of one content; the colder is found") {
+  const auto r = answered(
+      "[gas]\nN2 = \"100 %\"\n[contact]\npressure = \"18 bar gauge\"\n"
+      "dissolved = { N2 = \"300 mg/L\" }\n");
+  CHECK(si_value(r.answer.temperature.value) < 273.15 + 50);
+}
+
+TEST_CASE("a target out of reach is a caution where it only judges") {
+  const auto r = answered(
+      "[gas]\nCO2 = \"99.9 %\"\nair = \"rest\"\n[contact]\ntemperature = \"4 degC\"\n"
+      "pressure = \"1 bar gauge\"\n[target]\nCO2 = \"3.7 vol\"\nO2 = \"8 mg/L\"\n");
+  bool said = false;
+  for (const auto& c : r.cautions) said = said || c.code == "target-unreachable";
+  CHECK(said);
+  CHECK(r.answer.saturation[0].pressure_gauge.asked);
+  CHECK_FALSE(r.answer.saturation[1].pressure_gauge.asked);
 }

@@ -55,7 +55,7 @@ with tempfile.TemporaryDirectory() as scratch:
     (scratch / "c3.toml").write_bytes(b"title = \"\xc3")
     done = run("report", scratch / "c3.toml")
     check("a lone 0xC3 exits 2", done.returncode == 2 and b"0xC3" in done.stderr, done)
-    (scratch / "deep.toml").write_bytes(b"a = " + b"[" * 20000)
+    (scratch / "deep.toml").write_bytes(b"a = " + b"[\n" * 20000)
     done = run("report", scratch / "deep.toml")
     check("deep nesting exits 2", done.returncode == 2 and b"deeper" in done.stderr, done)
     (scratch / "long.toml").write_bytes(b"# x\n" * 100000)
@@ -94,7 +94,7 @@ with tempfile.TemporaryDirectory() as scratch:
         done = run(*arguments, stdin=can)
         check(f"usage {arguments} exits 2", done.returncode == 2 and done.stderr, done)
     check("--help exits 0", run("--help").returncode == 0)
-    check("--version exits 0", run("--version").stdout.strip() == b"0.1.0")
+    check("--version exits 0", run("--version").stdout.strip() == b"0.2.0")
     done = run("report", "-", "--trace", stdin=can)
     check("--trace shows records", b"henry.CO2.weiss1974" in done.stdout, done)
     hot = b'[contact]\ntemperature = "4 degC"\npressure = "12 bar gauge"\n'

@@ -38,7 +38,7 @@ std::vector<std::string> codes_without(const std::string& key, const std::string
 
 TEST_CASE("the built-in tables are the files, digit by digit") {
   const auto read = load_library(kTables);
-  for (const auto& f : read.findings) INFO(f.message);
+  for (const auto& f : read.findings) UNSCOPED_INFO(f.message);
   REQUIRE(read);
   const auto& built_in = built_in_library();
   CHECK(read->digest() == built_in.digest());

@@ -64,9 +64,12 @@ TEST_CASE("bytes that would harm the parser never reach it") {
   CHECK(refusal("a = \"\xED\xA0\x80\"") == "not-utf8");  // a surrogate
   CHECK(refusal(std::string("a = \"\0\"", 7)) == "not-text");
   CHECK(refusal(std::string(70000, '#')) == "too-long");
-  CHECK(refusal("a = " + std::string(20000, '[')) == "too-deep");
+  std::string brackets = "a = ";
+  for (int i = 0; i < 20000; ++i) brackets += i % 100 == 99 ? "[\n" : "[";
+  CHECK(refusal(brackets) == "too-deep");
+  CHECK(refusal("a = \"" + std::string(5000, 'x') + "\"") == "line-too-long");
   std::string dotted = "a";
-  for (int i = 0; i < 20000; ++i) dotted += ".a";
+  for (int i = 0; i < 1000; ++i) dotted += ".a";
   CHECK(refusal(dotted + " = 1") == "too-deep");
   // Quotes and comments must not hide brackets.
   CHECK(refusal("a = \"\"\" x \"\"\"\nb = " + std::string(100, '[')) == "too-deep");

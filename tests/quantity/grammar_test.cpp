@@ -66,6 +66,9 @@ TEST_CASE("grammar names what is wrong") {
   CHECK(fault("1e999 bar gauge", kPressure) == "number-out-of-range");
   CHECK(fault("1e308 bar gauge", kPressure) == "number-out-of-range");
   CHECK(fault("2.3", kPressure) == "unit-missing");
+  CHECK(fault("2.3 barg abs", kPressure) == "reference-contradicts");
+  CHECK(fault("30 psia gauge", kPressure) == "reference-contradicts");
+  CHECK(fault("4 °", kTemperature) == "degree-of-what");
   CHECK(fault("2.3 baar gauge", kPressure) == "unit-unknown");
   CHECK(fault("2.3 degC", kPressure) == "unit-wrong-kind");
   CHECK(fault("4 degC gauge", kTemperature) == "reference-misplaced");
@@ -73,6 +76,12 @@ TEST_CASE("grammar names what is wrong") {
   CHECK(fault("4 degC ± 0.3", kTemperature) == "unit-missing");
   CHECK(fault("4 degC ± 0.3 bar", kTemperature) == "unit-wrong-kind");
   CHECK(fault("4 degC ± 0.3 K ± 1 K", kTemperature) == "text-left-over");
+}
+
+TEST_CASE("grammar reads pipe sizes") {
+  constexpr std::array length{Dimension::length};
+  CHECK(within_relative(parsed("3/4 in", length).value, 0.01905, 1e-15));
+  CHECK(fault("3/0 in", length) == "unit-unknown");
 }
 
 TEST_CASE("every unit round trips") {

@@ -68,7 +68,7 @@ struct Case {
   PerGas<std::uint8_t> in_container;  ///< whether it belongs to the closed package
   Shares air;                         ///< of the room and of air in a headspace
   bool ideal_volumes = false;
-  std::size_t co2 = 0;  ///< its place among the gases; size() where there is none
+  bool content_from_target = false;  ///< the contact's content is a target's
 };
 
 /// The dry composition at the contact at the current z, adding up to one.

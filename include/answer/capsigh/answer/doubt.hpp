@@ -21,9 +21,15 @@ struct BudgetLine {
   bool is_record = false;
 };
 
-/// Sets u of every figure of `answer` (solved from `c` at z = 0) and returns the budget of the main
-/// figures, largest share first.
-std::vector<BudgetLine> propagate(Case& c, Answer& answer);
+/// The budget of the main figures, largest share first; an error for every doubt so wide that no
+/// answer exists on either side of it.
+struct Propagation {
+  std::vector<BudgetLine> budget;
+  Findings findings;
+};
+
+/// Sets u of every figure of `answer` (solved from `c` at z = 0).
+Propagation propagate(Case& c, Answer& answer);
 
 /// Judges the range of every record in the trace at the nominal point: a caution where it is left,
 /// with value and bounds, and the record's u widened in `c`: by 1 + w d, d the distance outside in

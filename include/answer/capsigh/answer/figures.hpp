@@ -8,6 +8,7 @@
 #include <vector>
 
 #include "capsigh/balance/medium.hpp"
+#include "capsigh/balance/refusal.hpp"
 #include "capsigh/quantity/units.hpp"
 
 namespace capsigh {
@@ -70,6 +71,7 @@ struct SaturationFigures {
   Figure<Pressure> pressure_absolute;
   Figure<GaugePressure> pressure_gauge;
   Figure<Temperature> temperature;
+  std::optional<RefusalCode> unreachable;  ///< why nothing holds the wanted content
 };
 
 struct ContainerFigures {
@@ -78,6 +80,7 @@ struct ContainerFigures {
   Figure<GaugePressure> pressure_gauge;
   Figure<Fraction> ullage;
   Figure<Pressure> vapour;
+  Figure<Pressure> ethanol;
   PerGas<GasFigures> gases;
 };
 
@@ -93,7 +96,8 @@ struct Answer {
   Figure<Pressure> pressure_absolute;
   Figure<GaugePressure> pressure_gauge;
   Figure<Pressure> ambient;
-  Figure<Pressure> vapour;
+  Figure<Pressure> vapour;   ///< of water
+  Figure<Pressure> ethanol;  ///< vapour of ethanol, where the liquid has some
   PerGas<GasFigures> gases;
   PerGas<SaturationFigures> saturation;
   boost::container::static_vector<ContainerFigures, 8> container;
@@ -141,6 +145,7 @@ void each_figure(A& a, F&& f) {
   f(FigurePath("condition", "pressure_gauge"), a.pressure_gauge, kilopascal);
   f(FigurePath("condition", "ambient"), a.ambient, kilopascal);
   f(FigurePath("headspace", "partial_pressure", "water"), a.vapour, kilopascal);
+  f(FigurePath("headspace", "partial_pressure", "ethanol"), a.ethanol, kilopascal);
   detail::each_gas_figure(a.gases, FigurePath(), f);
   for (auto& s : a.saturation) {
     const FigurePath at("saturation", s.gas);
@@ -156,6 +161,7 @@ void each_figure(A& a, F&& f) {
     f(at.then("pressure_gauge"), c.pressure_gauge, kilopascal);
     f(at.then("ullage"), c.ullage, percent);
     f(at.then("headspace").then("partial_pressure").then("water"), c.vapour, kilopascal);
+    f(at.then("headspace").then("partial_pressure").then("ethanol"), c.ethanol, kilopascal);
     detail::each_gas_figure(c.gases, at, f);
   }
   for (auto& loss : a.opening) {

@@ -8,6 +8,7 @@
 #include "capsigh/answer/bind.hpp"
 #include "capsigh/answer/doubt.hpp"
 #include "capsigh/answer/figures.hpp"
+#include "capsigh/answer/second_opinion.hpp"
 
 namespace capsigh {
 
@@ -32,11 +33,13 @@ struct Report {
   std::string title;
   std::vector<std::pair<std::string, std::string>> about;
   std::string liquid;
+  std::string relation;  ///< "composition", or the name of the trade's relation in force
   Answer answer;
   std::vector<std::string> gases;  ///< of the headspace
   bool solved_for_pressure = false;
   bool solved_for_temperature = false;
   std::vector<std::pair<std::string, std::string>> targets;  ///< gas and content as asked
+  std::vector<SecondOpinion> second_opinion;
   std::vector<BudgetLine> budget;
   std::vector<std::string> doubt_not_stated;
   Findings assumptions;

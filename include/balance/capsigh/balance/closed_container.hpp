@@ -28,7 +28,7 @@ struct Closing {
   Volume brimful{};
 };
 
-Filling close(const Medium& medium, const Closing& closing);
+Filling close(const Medium& medium, const Liquid& liquid, const Closing& closing);
 
 /// The package at equilibrium.
 struct ClosedState {
@@ -40,7 +40,8 @@ struct ClosedState {
   Fraction z{};
 };
 
-OrRefusal<ClosedState> equilibrium(const Medium& medium, const Filling& filling, Temperature t);
+OrRefusal<ClosedState> equilibrium(const Medium& medium, const Liquid& liquid,
+                                   const Filling& filling, Temperature t);
 
 /// Amount of dry gas over the liquid at the state's composition under `p`.
 Amount gas_in_headspace(Trace* trace, const Medium& medium, const ClosedState& state, Pressure p);

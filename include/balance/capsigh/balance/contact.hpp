@@ -10,7 +10,8 @@
 namespace capsigh {
 
 /// Content of one gas at equilibrium, mol per kg of degassed liquid: Dalton, fugacity, pressure on
-/// Henry's constant, Henry. Source of each law: its header. `p` is the total absolute pressure.
+/// Henry's constant, Henry; CO2 by the medium's convention where one is in force. Source of each
+/// law: its header. `p` is the total absolute pressure.
 Molality content(Trace* trace, const Medium& medium, const AtTemperature& at,
                  const GasMixture& mixture, Pressure p, std::size_t gas);
 
@@ -23,8 +24,9 @@ OrRefusal<Pressure> pressure_for(const Medium& medium, const AtTemperature& at,
                                  const GasMixture& mixture, std::size_t gas, Molality content);
 
 /// The temperature at which it does under that pressure; the coldest where there are two.
-OrRefusal<Temperature> temperature_for(const Medium& medium, const Shares& shares, Pressure p,
-                                       std::size_t gas, Molality content);
+OrRefusal<Temperature> temperature_for(const Medium& medium, const Liquid& liquid,
+                                       const Shares& shares, Pressure p, std::size_t gas,
+                                       Molality content);
 
 /// A root as a step of a trace: what was solved for, from what. Found by bracketing (TOMS 748).
 struct SolvedPressure {
@@ -40,7 +42,9 @@ struct SolvedTemperature {
   Temperature operator()(Molality, Pressure) const { return root; }
 };
 
-/// Refuses a pressure at which the liquid boils or the gas law has no meaning; nullopt is well.
-std::optional<Refusal> pressure_refusal(const Medium& medium, const AtTemperature& at, Pressure p);
+/// Refuses a pressure at which the liquid boils, CO2 condenses or the gas law has no meaning;
+/// nullopt is well.
+std::optional<Refusal> pressure_refusal(const Medium& medium, const AtTemperature& at,
+                                        const Shares& shares, Pressure p);
 
 }  // namespace capsigh

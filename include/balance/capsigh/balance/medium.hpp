@@ -9,10 +9,11 @@
 #include <string_view>
 #include <vector>
 
+#include "capsigh/balance/convention.hpp"
+#include "capsigh/balance/liquid.hpp"
 #include "capsigh/constants/cited.hpp"
 #include "capsigh/models/henry.hpp"
 #include "capsigh/models/real_gas.hpp"
-#include "capsigh/models/solution.hpp"
 #include "capsigh/models/vapour.hpp"
 
 namespace capsigh {
@@ -31,10 +32,12 @@ struct HenrySegment {
   HenryForm form;
   RecordDoubt doubt;
   HenryReference reference = HenryReference::one_atmosphere;
+  bool per_partial_pressure = false;  ///< the record's scale; else per fugacity
 };
 
 /// Henry's constant of one gas: records in the order of temperature, joined over their overlaps
-/// (overlap i lies between segments i and i + 1, in K).
+/// (overlap i lies between segments i and i + 1, in K). The doubt of a record that takes over from
+/// a better known one begins with the other's and reaches its own one overlap's width beyond.
 struct HenryChain {
   boost::container::static_vector<HenrySegment, 3> segments;
   boost::container::static_vector<Interval, 2> overlaps;
@@ -49,6 +52,7 @@ struct GasModel {
   CitedConstant<MolarVolume> molar_volume;  ///< partial, of the dissolved gas
   /// Of the gas at 0 °C and 1 atm where a record gives it; else by the virial coefficient.
   std::optional<CitedConstant<MolarVolume>> standard_volume;
+  Cited<GasSalting> salting;  ///< used only where the liquid has ions
 };
 
 struct Medium {
@@ -56,13 +60,14 @@ struct Medium {
   Pressure atmosphere{};
   Temperature zero_celsius;         ///< with the atmosphere: the state behind 'vol'
   Temperature content_temperature;  ///< of the degassed litre behind every content
-  Cited<WaterVapourPressure> vapour;
-  Cited<WaterDensity> density;
-  CitedConstant<MolarMass> water_molar_mass;
-  RecordDoubt truncation;       ///< of the virial series; its record's limit bounds the pressure
-  Pressure pressure_limit{};    ///< beyond which no answer is given
+  LiquidModel liquid;
+  Convention convention;      ///< by which the trade reads CO2; none: by composition
+  RecordDoubt truncation;     ///< of the virial series; its record's limit bounds the pressure
+  Pressure pressure_limit{};  ///< beyond which no answer is given
+  CarbonDioxideVapourPressure condensation;
   Interval temperature_search;  ///< K, where a temperature is looked for
   PerGas<GasModel> gases;
+  std::size_t co2 = kMaxGases;  ///< its place among the gases; kMaxGases where there is none
   boost::container::static_vector<Cited<CrossVirialExcess>, kMaxCrossRecords> cross;
   std::array<std::array<std::uint8_t, kMaxGases>, kMaxGases> cross_of{};  ///< index into `cross`
 
@@ -72,9 +77,7 @@ struct Medium {
 /// Calls visit(RecordDoubt&) for every record's doubt in the medium, each once.
 template <class Visit>
 void each_record_doubt(Medium& m, Visit&& visit) {
-  visit(m.vapour.doubt);
-  visit(m.density.doubt);
-  visit(m.water_molar_mass.doubt);
+  each_record_doubt(m.liquid, visit);
   visit(m.truncation);
   for (auto& c : m.cross) visit(c.doubt);
   for (auto& gas : m.gases) {
@@ -82,20 +85,40 @@ void each_record_doubt(Medium& m, Visit&& visit) {
     visit(gas.virial_doubt);
     visit(gas.molar_volume.doubt);
     if (gas.standard_volume) visit(gas.standard_volume->doubt);
+    visit(gas.salting.doubt);
     for (auto& s : gas.henry.segments) visit(s.doubt);
   }
 }
 
-/// Everything that depends on temperature alone.
-struct AtTemperature {
+/// What pure CO2 over a liquid needs to know at one temperature.
+struct CarbonDioxideAt {
   Temperature t;
   Pressure vapour{};
   MassDensity density{};
+  HenryConstant k{};
+  Pressure k_reference{};
+  MolarVolume v{};
+  MolarVolume b{};
+};
+
+/// Everything that depends on temperature and liquid alone.
+struct AtTemperature {
+  Temperature t;
+  Pressure vapour{};  ///< of water and ethanol together
+  VapourAt vapours;
+  MassDensity density{};     ///< of the degassed liquid
+  MassDensity density_20{};  ///< at 20 °C
   PerGas<HenryConstant> k;
   PerGas<Pressure> k_reference;
   PerGas<MolarVolume> v;
   PerGas<MolarVolume> b;       ///< pure second virial coefficients
   PerGas<MolarVolume> excess;  ///< one per Medium::cross record
+  /// Where the trade's convention is read: at T, or at the edge of its range.
+  CarbonDioxideAt convention_at;
+  CarbonDioxideAt water_at;  ///< pure water there, without doubt (water equivalent)
+  MassDensity water_at_20{};
+  Fraction ethanol_by_volume{};
+  MassConcentration sugar{};
 };
 
 /// What a traced evaluation notes: the chain of one gas, in a mixture of these shares. The fugacity
@@ -108,7 +131,8 @@ struct Noting {
   bool compressibility = false;
 };
 
-AtTemperature at_temperature(const Medium& medium, Temperature t, const Noting& note = {});
+AtTemperature at_temperature(const Medium& medium, const Liquid& liquid, Temperature t,
+                             const Noting& note = {});
 
 /// A dry mixture's virial sums at one temperature: b_star_i = 2 Σ_j y_j B_ij − B_mix.
 struct GasMixture {

@@ -54,6 +54,19 @@ auto apply(Trace* trace, const Law& law, const In&... in) {
   return out;
 }
 
+/// Evaluates a formula that follows a definition (a record without doubt) and notes it. The range
+/// of the definition is judged at `at`.
+template <class Law, class... In>
+auto apply_defined(Trace* trace, const Record* definition, const Conditions& at, const Law& law,
+                   const In&... in) {
+  const auto out = apply(trace, law, in...);
+  if (trace != nullptr) {
+    trace->chains.back().steps.back().definition = definition;
+    trace->chains.back().steps.back().conditions = at;
+  }
+  return out;
+}
+
 /// The doubt of one record: z standard uncertainties away from what is printed. Outside its range
 /// `widening` enlarges u. Relative where the result keeps its sign, absolute (SI) where it may
 /// cross zero.

@@ -16,12 +16,13 @@ struct TraceValue {
   std::string_view unit;
 };
 
-/// One formula evaluated: its name, its equation, the record behind it (none for identities), what
-/// went in and what came out.
+/// One formula evaluated: its name, its equation, the record behind it (none for identities) or the
+/// definition it follows (a record without doubt: a convention), what went in and what came out.
 struct TraceStep {
   std::string_view law;
   std::string_view equation;
   const Record* record = nullptr;
+  const Record* definition = nullptr;
   std::vector<TraceValue> inputs;
   TraceValue result;
   Conditions conditions;

@@ -40,6 +40,7 @@ std::string_view kind_name(Node::Kind kind);
 struct DocumentLimits {
   std::size_t bytes = 64 * 1024;
   std::size_t depth = 64;
+  std::size_t line = 4096;
 };
 
 /// Parses a TOML text (a BOM and CRLF line ends are accepted). On failure one finding says where

@@ -28,6 +28,18 @@ struct ThreeTermHenry {
   [[nodiscard]] MolalHenryConstant per_mass(Temperature t) const;
 };
 
+/// What salinity S (g/kg) adds to ln K0 of the three-term form: S (B1 + B2 T/100 + B3 (T/100)²).
+/// Source: Weiss 1974 (CO2 in seawater, record henry.CO2.weiss1974_salinity), S 0–40. Worked value:
+/// S = 35, 20 °C: K0 goes from 0.03916 to 0.03241 mol/(kg atm).
+struct SalinityOnHenry {
+  std::array<double, 3> b{};
+  /// Change of ln K0; S in grams per kilogram.
+  [[nodiscard]] double ln_change(Temperature t, double salinity) const {
+    const double hundreds = t.kelvin() / 100.0;
+    return salinity * (b[0] + (b[1] + b[2] * hundreds) * hundreds);
+  }
+};
+
 /// ln(kH/Pa) = a0 + a1/T + a2/T², kH fugacity per mole fraction; k = ρ_w/(M_w kH).
 /// Source: Rettich, Battino & Wilhelm (N2, O2, Ar). Worked value: N2 at 298.15 K, kH = 8.60514 GPa.
 struct InversePowersHenry {
@@ -60,7 +72,59 @@ struct HighTemperatureHenry {
   [[nodiscard]] Pressure per_mole_fraction(Temperature t, Pressure vapour) const;
 };
 
-using HenryForm = std::variant<ThreeTermHenry, InversePowersHenry, HighTemperatureHenry>;
+/// ln x1 = A + B/θ + C ln θ + D θ, x1 the mole fraction dissolved under 101.325 kPa of the gas's
+/// partial pressure, θ = T/100 K (IUPAC, CRC) or T/K (the CO and H2S sets); k = ρ_w x1/((1 − x1)
+/// M_w · 101.325 kPa), per *partial pressure*. Worked value: He at 298.15 K, x1 = 6.997e−6.
+struct MoleFractionHenry {
+  std::array<double, 4> a{};
+  double theta = 100;  ///< K, the unit in which the form counts T
+  MolarMass water_molar_mass{};
+  Pressure partial_pressure{};  ///< 101.325 kPa
+
+  static constexpr LawInfo<3> info{
+      "Henry's constant, mole fraction at 1 atm",
+      "k = rho_w x/((1 - x) M_w 1 atm), ln x = A + B/theta + C ln theta + D theta",
+      {"T", "rho_w", "p_v*"},
+      "k"};
+  HenryConstant operator()(Temperature t, MassDensity water, Pressure vapour) const;
+  [[nodiscard]] double mole_fraction(Temperature t) const;
+};
+
+/// k = k° exp(D (1/T − 1/298.15 K)): van 't Hoff with a constant enthalpy of solution −D R. Source:
+/// Sander's compilation. `scale` makes it meet a better record where it takes over from one.
+struct TwoTermHenry {
+  double k0 = 0;  ///< in the printed unit
+  double d = 0;   ///< K
+  double factor = 1;
+  double scale = 1;
+  static constexpr double reference_temperature = 298.15;  ///< K, part of the form
+
+  static constexpr LawInfo<3> info{"Henry's constant, two-term van 't Hoff",
+                                   "k = k0 exp(D (1/T - 1/298.15))",
+                                   {"T", "rho_w", "p_v*"},
+                                   "k"};
+  HenryConstant operator()(Temperature t, MassDensity water, Pressure vapour) const;
+};
+
+using HenryForm = std::variant<ThreeTermHenry, InversePowersHenry, HighTemperatureHenry,
+                               MoleFractionHenry, TwoTermHenry>;
+
+/// A constant per partial pressure as one per fugacity: k = k_p/φ, φ at the pressure it was taken
+/// at.
+struct PartialToFugacity {
+  static constexpr LawInfo<2> info{
+      "Henry's constant per fugacity", "k = k_p / phi(1 atm)", {"k_p", "phi"}, "k"};
+  HenryConstant operator()(HenryConstant per_partial, Fraction phi) const {
+    return per_partial / phi;
+  }
+};
+
+/// Enthalpy of solution: ΔH = −R d ln k/d(1/T), J/mol, from two temperatures close to each other.
+struct EnthalpyOfSolution {
+  GasConstant r{};
+  MolarEnergy operator()(HenryConstant k_cold, Temperature cold, HenryConstant k_warm,
+                         Temperature warm) const;
+};
 
 /// The total pressure at which a Henry's constant was taken.
 enum class HenryReference { one_atmosphere, vapour_pressure };

@@ -25,6 +25,14 @@ enum class Dimension {
   amount_concentration,
   molality,
   mass_fraction,
+  volume_fraction,
+  density,
+  duration,
+  area,
+  mass_flow,
+  volume_flow,
+  normal_volume_flow,  ///< of gas at 0 °C and 101.325 kPa, as volume of that state
+  rate,                ///< per time
 };
 
 /// The name of a dimension in a sentence: "temperature".

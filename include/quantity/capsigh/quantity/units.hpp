@@ -38,6 +38,8 @@ using MolarVolumeUnit = detail::Per<si::volume, si::amount>;
 using HenryUnit = detail::Per<AmountConcentrationUnit, si::pressure>;
 using MolalHenryUnit = detail::Per<MolalityUnit, si::pressure>;
 using GasConstantUnit = detail::Per<si::energy, detail::Times<si::amount, si::temperature>>;
+using MolarEnergyUnit = detail::Per<si::energy, si::amount>;
+using SpecificVolumeUnit = detail::Per<si::volume, si::mass>;
 using AccelerationUnit = detail::Per<detail::Per<si::length, si::time>, si::time>;
 using LapseRateUnit = detail::Per<si::temperature, si::length>;
 
@@ -58,6 +60,8 @@ using MolarVolume = Quantity<MolarVolumeUnit>;                  ///< m³/mol
 using HenryConstant = Quantity<HenryUnit>;                      ///< mol/(m³ Pa)
 using MolalHenryConstant = Quantity<MolalHenryUnit>;            ///< mol/(kg Pa)
 using GasConstant = Quantity<GasConstantUnit>;                  ///< J/(mol K)
+using MolarEnergy = Quantity<MolarEnergyUnit>;                  ///< J/mol
+using SpecificVolume = Quantity<SpecificVolumeUnit>;            ///< m³/kg
 using Acceleration = Quantity<AccelerationUnit>;                ///< m/s²
 using LapseRate = Quantity<LapseRateUnit>;                      ///< K/m
 
@@ -183,5 +187,7 @@ template <>
 inline constexpr std::string_view si_symbol<HenryConstant> = "mol/(m3 Pa)";
 template <>
 inline constexpr std::string_view si_symbol<MolalHenryConstant> = "mol/(kg Pa)";
+template <>
+inline constexpr std::string_view si_symbol<SpecificVolume> = "m3/kg";
 
 }  // namespace capsigh

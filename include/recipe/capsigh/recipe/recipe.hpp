@@ -62,6 +62,32 @@ struct GivenShare {
   Given<Fraction> share;
 };
 
+/// How a solute's amount is expressed; the number behind it is in SI units of that measure.
+enum class GivenSoluteMeasure {
+  mass_fraction,
+  volume_fraction,
+  mass_concentration,
+  amount_concentration,
+};
+
+/// One solute of the liquid: an organic by its key, or a salt by its formula.
+struct GivenSolute {
+  LocatedText name;
+  bool salt = false;
+  GivenSoluteMeasure measure = GivenSoluteMeasure::mass_fraction;
+  Given<Fraction> amount;
+};
+
+struct LiquidSection {
+  Place place;
+  std::optional<LocatedText> like;
+  std::optional<LocatedText> basis;
+  std::optional<LocatedText> relation;
+  std::optional<LocatedText> volume_basis;
+  std::vector<GivenSolute> solutes;
+  std::optional<Given<MassDensity>> density;
+};
+
 struct ContactSection {
   Place place;
   std::optional<Given<Temperature>> temperature;
@@ -89,7 +115,7 @@ struct Recipe {
   bool readable = true;  ///< false if some value could not be read; it still counts as given
   std::string title;
   std::vector<std::pair<std::string, std::string>> about;  ///< carried into every output
-  std::optional<LocatedText> like;
+  std::optional<LiquidSection> liquid;
   std::vector<GivenShare> gas;
   std::optional<Place> gas_place;
   std::optional<ContactSection> contact;
