@@ -48,19 +48,20 @@ std::string_view unit_of(ContentMeasure measure) {
 
 }  // namespace
 
-Shares contact_shares(const Case& c) {
-  double given = 0;
+Shares contact_shares(const Case& c, Fraction found) {
+  double given = found.value();
   bool has_rest = false;
   for (const auto& line : c.contact.gas) {
     has_rest = has_rest || line.rest;
-    if (!line.rest) given += line.share.now().value();
+    if (!line.rest && !line.find) given += line.share.now().value();
   }
   // Without a rest the lines add up to 1 within the tolerance of bind; they are scaled to it, so
   // that a doubt in one line is borne by the others in proportion.
   const double scale = has_rest ? 1.0 : 1.0 / given;
   Shares shares(c.medium.size(), Fraction(0.0));
   for (const auto& line : c.contact.gas) {
-    const double share = line.rest ? 1.0 - given : line.share.now().value() * scale;
+    const double own = line.find ? found.value() : line.share.now().value() * scale;
+    const double share = line.rest ? 1.0 - given : own;
     for (std::size_t i = 0; i < shares.size(); ++i) {
       shares[i] = shares[i] + line.parts[i] * share;
     }
@@ -80,11 +81,28 @@ std::vector<Doubt> each_doubt(Case& c) {
   }
   list.input("contact.altitude", c.ambient.altitude);
   list.input("contact.ambient", c.ambient.stated);
+  list.input("contact.depth", contact.depth);
+  list.input("contact.approach", contact.approach);
   for (auto& line : contact.gas) list.input("gas." + line.name, line.share);
   if (c.container) {
     list.input("container.brimful", c.container->brimful);
-    list.input("container.fill", c.container->fill);
-    list.input("container.closed_at.air", c.container->closing_air);
+    auto& container = *c.container;
+    list.input("container.fill", container.fill);
+    list.input("container.fill_mass", container.fill_mass);
+    list.input("container.closed_at.temperature", container.closing_temperature);
+    list.input("container.closed_at.pressure", container.closing_absolute);
+    list.input("container.closed_at.pressure", container.closing_gauge);
+    list.input("container.closed_at.air", container.closing_air);
+    list.input("container.closed_at.air", container.closing_air_volume);
+    if (container.closing_oxygen) {
+      list.input("container.closed_at.dissolved_oxygen", container.closing_oxygen->amount,
+                 unit_of(container.closing_oxygen->measure));
+    }
+    for (auto& loss : container.filling_loss) {
+      list.input("container.filling_loss." + std::string(c.medium.gases[loss.gas].name),
+                 loss.amount, unit_of(loss.measure));
+    }
+    list.input("container.nitrogen_dose", container.nitrogen_dose);
   }
   if (c.opening) list.input("opening.temperature", c.opening->temperature);
   for (auto& solute : c.medium.liquid.solutes) {

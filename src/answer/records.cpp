@@ -119,16 +119,24 @@ Cited<CrossVirialExcess> cross_virial(const Record& record) {
 
 bool of_air(std::string_view gas) { return gas == "N2" || gas == "O2" || gas == "Ar"; }
 
-// CO2 with a gas of air has a source of its own; other pairs take the default.
+// Pairs with a source of their own, pairs of air, and the rest: index into Medium::cross.
 void choose_cross_virials(const Library& library, Medium& m) {
-  m.cross.push_back(cross_virial(library.at("cross_virial.default")));
-  m.cross.push_back(cross_virial(library.at("cross_virial.CO2-air")));
+  enum : std::uint8_t { air_pair, co2_air, n2o_air, unlike };
+  for (const auto* key : {"cross_virial.default", "cross_virial.CO2-air", "cross_virial.N2O-air",
+                          "cross_virial.unlike"}) {
+    m.cross.push_back(cross_virial(library.at(key)));
+  }
   for (std::size_t i = 0; i < m.size(); ++i) {
     for (std::size_t j = 0; j < m.size(); ++j) {
       const auto& a = m.gases[i].name;
       const auto& b = m.gases[j].name;
-      const bool co2_air = (a == "CO2" && of_air(b)) || (b == "CO2" && of_air(a));
-      m.cross_of[i][j] = co2_air ? 1 : 0;
+      const auto with_air = [&](std::string_view gas) {
+        return (a == gas && of_air(b)) || (b == gas && of_air(a));
+      };
+      m.cross_of[i][j] = of_air(a) && of_air(b) ? air_pair
+                         : with_air("CO2")      ? co2_air
+                         : with_air("N2O")      ? n2o_air
+                                                : unlike;
     }
   }
 }
@@ -154,6 +162,7 @@ Convention convention_of(const Library& library, const Record* relation, const M
   convention.record = relation;
   convention.temperature = hull(relation->range, &ValidityBox::temperature);
   convention.pressure = hull(relation->range, &ValidityBox::pressure);
+  convention.least_partial = constant<Pressure>(library, "assumed.convention_margin");
   if (relation->form == "asbc") {
     convention.relation = AsbcRelation::from(*relation);
   } else if (relation->form == "mebak") {

@@ -1,8 +1,11 @@
 #include "capsigh/answer/report.hpp"
 
+#include <fmt/format.h>
+
 #include <algorithm>
 
 #include "capsigh/answer/solve.hpp"
+#include "capsigh/quantity/grammar.hpp"
 
 namespace capsigh {
 namespace {
@@ -54,7 +57,7 @@ Place place_of(const Recipe& recipe, const Refusal& refusal) {
                            refusal.code == RefusalCode::pressure_beyond_model;
   if (by_pressure && contact->pressure) return contact->pressure->source.place;
   if (!contact->dissolved.empty()) return contact->dissolved.front().amount.source.place;
-  if (!recipe.target.empty()) return recipe.target.front().amount.source.place;
+  if (!recipe.target.empty()) return recipe.target.front().content.amount.source.place;
   return contact->place;
 }
 
@@ -93,6 +96,21 @@ Finding package_caution() {
   return f;
 }
 
+// A package above its rating comes first on the page.
+void judge_rating(Report& report) {
+  for (const auto& c : report.answer.container) {
+    if (!c.margin.asked || c.margin.value.value() >= 0) continue;
+    report.limits_met = false;
+    Finding f;
+    f.severity = Severity::caution;
+    f.code = "over-rating";
+    f.message = fmt::format(
+        "the package stands above its rating by {} bar",
+        significant(in_unit(-c.margin.value.value(), *find_unit("bar", Dimension::pressure)), 3));
+    report.cautions.insert(report.cautions.begin(), std::move(f));
+  }
+}
+
 void describe(const Recipe& recipe, const Binding& binding, Report& report) {
   report.title = recipe.title;
   report.about = recipe.about;
@@ -106,7 +124,9 @@ void describe(const Recipe& recipe, const Binding& binding, Report& report) {
   report.solved_for_pressure = c.contact.known == Known::temperature_content;
   report.solved_for_temperature = c.contact.known == Known::pressure_content;
   for (const auto& target : recipe.target) {
-    report.targets.emplace_back(target.gas.text, target.amount.source.text);
+    const std::string limit = target.is_maximum ? "max " : target.is_minimum ? "min " : "";
+    auto& list = limit.empty() ? report.targets : report.limits;
+    list.emplace_back(target.content.gas.text, limit + target.content.amount.source.text);
   }
   if (report.targets.empty() && recipe.contact && !recipe.contact->dissolved.empty()) {
     const auto& content = recipe.contact->dissolved.front();
@@ -142,6 +162,7 @@ Outcome<Report> report(const Outcome<Recipe>& recipe, std::string_view recipe_te
   }
   caution_unreachable(report);
   if (problem.container) report.cautions.push_back(package_caution());
+  judge_rating(report);
   report.second_opinion = second_opinions(*binding, report.answer, library);
   auto propagation = propagate(problem, report.answer);
   if (has_error(propagation.findings)) {

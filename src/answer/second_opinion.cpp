@@ -14,14 +14,15 @@ struct Asked {
 
 // The figures that a relation decides: CO2 content, and what holds a wanted content.
 std::vector<Asked> decided(const Answer& answer, bool content_known) {
+  const bool found = !answer.blend.empty();
   std::vector<Asked> all;
   each_figure(answer, [&](const FigurePath& path, const auto& figure, const JsonUnit& unit) {
     if (!figure.asked) return;
     const std::string text = path.text();
-    const bool content = !content_known && text == "dissolved.CO2.volumes";
+    const bool content = !found && !content_known && text == "dissolved.CO2.volumes";
     const bool holds =
-        text == "saturation.CO2.pressure_gauge" || text == "saturation.CO2.temperature";
-    if (content || holds) {
+        !found && (text == "saturation.CO2.pressure_gauge" || text == "saturation.CO2.temperature");
+    if (content || holds || text == "blend.CO2") {
       all.push_back({text, (si_value(figure.value) - unit.offset) / unit.factor, unit});
     }
   });

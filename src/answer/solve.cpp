@@ -1,478 +1,431 @@
 #include "capsigh/answer/solve.hpp"
 
-#include <fmt/format.h>
-
 #include <cmath>
 
-#include "capsigh/balance/closed_container.hpp"
-#include "capsigh/balance/contact.hpp"
-#include "capsigh/balance/opening.hpp"
+#include "capsigh/balance/root.hpp"
 #include "capsigh/quantity/grammar.hpp"
+#include "solver.hpp"
 
 namespace capsigh {
-namespace {
+namespace answer_detail {
 
-// The contact, solved.
-struct ContactState {
-  Pressure ambient{};
-  Shares shares;
-  AtTemperature at;
-  GasMixture mixture;
-  Pressure pressure{};
-  Contents contents;
-};
+OrRefusal<Answer> Solver::run() {
+  auto refusal = by(AskedBy::contact, solve_contact());
+  if (!refusal) refusal = by(AskedBy::saturation, answer_saturation());
+  if (!refusal && c_.container) refusal = by(AskedBy::closing, answer_container());
+  if (!refusal && c_.opening) refusal = by(AskedBy::opening, answer_opening());
+  if (!refusal) refusal = all_finite();
+  if (refusal) return *refusal;
+  return answer_;
+}
 
-class Solver {
- public:
-  Solver(const Case& c, Trace* trace)
-      : c_(c),
-        m_(c.medium),
-        trace_(trace),
-        liquid_(compose(c.medium.liquid, c.medium.content_temperature)) {}
+std::optional<Refusal> Solver::by(AskedBy step, Maybe refusal) {
+  if (refusal) refusal->asked_by = step;
+  return refusal;
+}
 
-  OrRefusal<Answer> run() {
-    auto refusal = by(AskedBy::contact, solve_contact());
-    if (!refusal) refusal = by(AskedBy::saturation, answer_saturation());
-    if (!refusal && c_.container) refusal = by(AskedBy::closing, answer_container());
-    if (!refusal && c_.opening) refusal = by(AskedBy::opening, answer_opening());
-    if (!refusal) refusal = all_finite();
-    if (refusal) return *refusal;
-    return answer_;
+// No figure leaves the solver that is no number.
+std::optional<Refusal> Solver::all_finite() const {
+  bool finite = true;
+  each_figure(answer_, [&](const FigurePath&, const auto& figure, const JsonUnit&) {
+    finite = finite && std::isfinite(si_value(figure.value));
+  });
+  if (finite) return std::nullopt;
+  return Refusal{RefusalCode::no_number};
+}
+
+Pressure Solver::ambient(Trace* trace) const {
+  if (!c_.ambient.altitude) return c_.ambient.stated.now();
+  return apply(trace, c_.ambient.atmosphere, c_.ambient.altitude->now());
+}
+
+Pressure Solver::given_pressure(Trace* trace) const {
+  if (c_.contact.absolute_pressure) return c_.contact.absolute_pressure->now();
+  return apply(trace, GaugeToAbsolute{}, c_.contact.gauge_pressure->now(), ambient(trace));
+}
+
+// The degassed liquid at 20 °C.
+MassDensity Solver::density_of_content(Trace* trace) const {
+  if (trace != nullptr) compose(m_.liquid, m_.content_temperature, trace);
+  return liquid_.density;
+}
+
+Molality Solver::molality(const ContentCase& content) const {
+  const double number = content.amount.now().value();
+  const auto molar_mass = m_.gases[content.gas].molar_mass.at(nullptr);
+  const auto rho = density_of_content(nullptr);
+  switch (content.measure) {
+    case ContentMeasure::volumes:
+      return from_si<Fraction>(number) / volume_basis(m_, content.gas, c_.ideal_volumes) / rho;
+    case ContentMeasure::mass_concentration:
+      return from_si<MassConcentration>(number) / molar_mass / rho;
+    case ContentMeasure::amount_concentration: return from_si<AmountConcentration>(number) / rho;
+    case ContentMeasure::molality: return from_si<Molality>(number);
+    case ContentMeasure::mass_fraction: return from_si<Fraction>(number) / molar_mass;
   }
+  return {};
+}
 
- private:
-  using Maybe = std::optional<Refusal>;
+LiquidColumn Solver::column() const {
+  return {c_.contact.depth ? c_.contact.depth->now() : Length{}, c_.gravity};
+}
 
-  static Maybe by(AskedBy step, Maybe refusal) {
-    if (refusal) refusal->asked_by = step;
-    return refusal;
+Fraction Solver::approach() const {
+  return c_.contact.approach ? c_.contact.approach->now() : Fraction(1.0);
+}
+
+// Pressure where the gas meets the liquid, under a headspace at p.
+Pressure Solver::below(const AtTemperature& at, Pressure headspace, Trace* trace) const {
+  if (!c_.contact.depth) return headspace;
+  const auto head = apply(trace, HydrostaticHead{c_.gravity}, at.density, column().depth);
+  return apply(trace, PressureAtDepth{}, headspace, head);
+}
+
+// What the liquid takes up under a headspace at p.
+Contents Solver::taken_up(const AtTemperature& at, const GasMixture& mixture,
+                          Pressure headspace) const {
+  Contents reached = contents(m_, at, mixture, below(at, headspace));
+  for (auto& b : reached) b = approach() * b;
+  return reached;
+}
+
+// The headspace pressure at which the liquid takes up that content.
+OrRefusal<Pressure> Solver::headspace_for(std::size_t gas, Molality wanted) const {
+  const auto found = pressure_for(m_, contact_.at, contact_.mixture, gas, wanted / approach());
+  if (refused(found) != nullptr || !c_.contact.depth) return found;
+  const auto head = HydrostaticHead{c_.gravity}(contact_.at.density, column().depth);
+  return std::get<Pressure>(found) - head;
+}
+
+// The same so that the package holds it once it is closed and settled.
+OrRefusal<Pressure> Solver::headspace_for_package(std::size_t gas, Molality wanted) const {
+  const auto at_least = headspace_for(gas, wanted);
+  if (refused(at_least) != nullptr) return at_least;
+  const auto residual = [&](double pascal) {
+    const auto settled = settled_package(from_si<Pressure>(pascal));
+    // An impossible package is above every wish.
+    if (refused(settled) != nullptr) return wanted.value();
+    return (std::get<ClosedState>(settled).contents[gas] - wanted).value();
+  };
+  const auto root =
+      root_between(residual, std::get<Pressure>(at_least).value(), m_.pressure_limit.value());
+  if (!root) {
+    // Already enough at the content itself: the headspace brings more than it takes.
+    const auto settled = settled_package(std::get<Pressure>(at_least));
+    if (const auto* no = refused(settled)) return *no;
+    return at_least;
   }
+  return from_si<Pressure>(*root);
+}
 
-  // No figure leaves the solver that is no number.
-  Maybe all_finite() const {
-    bool finite = true;
-    each_figure(answer_, [&](const FigurePath&, const auto& figure, const JsonUnit&) {
-      finite = finite && std::isfinite(si_value(figure.value));
-    });
-    if (finite) return std::nullopt;
-    return Refusal{RefusalCode::no_number};
+OrRefusal<ClosedState> Solver::settled_package(Pressure headspace) const {
+  const auto closing = closing_with(taken_up(contact_.at, contact_.mixture, headspace));
+  if (const auto* no = refused(closing)) return *no;
+  const auto& closed = std::get<Closing>(closing);
+  return equilibrium(m_, liquid_, close(m_, liquid_, closed), closed.temperature);
+}
+
+OrRefusal<Pressure> Solver::pressure_for_target(std::size_t gas, Molality wanted) const {
+  return c_.target_at_package && c_.container ? headspace_for_package(gas, wanted)
+                                              : headspace_for(gas, wanted);
+}
+
+// The share of the line to be found, at the given temperature and pressure.
+std::optional<Refusal> Solver::find_blend() {
+  const ShareLine* line = nullptr;
+  double others = 0;
+  for (const auto& l : c_.contact.gas) {
+    if (l.find) line = &l;
+    if (!l.find && !l.rest) others += l.share.now().value();
   }
-
-  // ---- contact ----------------------------------------------------------------------------------
-
-  Pressure ambient(Trace* trace) const {
-    if (!c_.ambient.altitude) return c_.ambient.stated.now();
-    return apply(trace, c_.ambient.atmosphere, c_.ambient.altitude->now());
+  if (line == nullptr) return std::nullopt;
+  const ContentCase* wish = nullptr;
+  for (const auto& target : c_.targets) {
+    if (m_.gases[target.gas].name == line->name) wish = &target;
   }
+  const Molality wanted = molality(*wish);
+  const auto at = at_temperature(m_, liquid_, c_.contact.temperature->now());
+  const auto p = given_pressure(nullptr);
+  const auto residual = [&](double share) {
+    const auto mixture = mix(m_, at, contact_shares(c_, Fraction(share)));
+    return (taken_up(at, mixture, p)[wish->gas] - wanted).value();
+  };
+  const auto root = root_between(residual, 0.0, 1.0 - others);
+  if (!root) return Refusal{RefusalCode::no_blend_holds, pressure_of_pure(at, *wish), 0};
+  found_ = Fraction(*root);
+  BlendFigures blend;
+  blend.gas = m_.gases[wish->gas].name;
+  blend.share = found_;
+  answer_.blend.push_back(blend);
+  return std::nullopt;
+}
 
-  Pressure given_pressure(Trace* trace) const {
-    if (c_.contact.absolute_pressure) return c_.contact.absolute_pressure->now();
-    return apply(trace, GaugeToAbsolute{}, c_.contact.gauge_pressure->now(), ambient(trace));
-  }
+// What would hold the wish: the pressure of the pure gas, Pa; 0 where not even that.
+double Solver::pressure_of_pure(const AtTemperature& at, const ContentCase& wish) const {
+  Shares pure(m_.size(), Fraction(0.0));
+  pure[wish.gas] = 1.0;
+  const auto found = pressure_for(m_, at, mix(m_, at, pure), wish.gas, molality(wish) / approach());
+  return refused(found) != nullptr ? 0.0 : std::get<Pressure>(found).value();
+}
 
-  // The degassed liquid at 20 °C.
-  MassDensity density_of_content(Trace* trace) const {
-    if (trace != nullptr) compose(m_.liquid, m_.content_temperature, trace);
-    return liquid_.density;
-  }
-
-  Molality molality(const ContentCase& content) const {
-    const double number = content.amount.now().value();
-    const auto molar_mass = m_.gases[content.gas].molar_mass.at(nullptr);
-    const auto rho = density_of_content(nullptr);
-    switch (content.measure) {
-      case ContentMeasure::volumes:
-        return from_si<Fraction>(number) / volume_basis(m_, content.gas, c_.ideal_volumes) / rho;
-      case ContentMeasure::mass_concentration:
-        return from_si<MassConcentration>(number) / molar_mass / rho;
-      case ContentMeasure::amount_concentration: return from_si<AmountConcentration>(number) / rho;
-      case ContentMeasure::molality: return from_si<Molality>(number);
-      case ContentMeasure::mass_fraction: return from_si<Fraction>(number) / molar_mass;
-    }
-    return {};
-  }
-
-  Maybe solve_contact() {
-    contact_.ambient = ambient(nullptr);
-    contact_.shares = contact_shares(c_);
-    Temperature t;
-    if (c_.contact.known == Known::pressure_content) {
-      contact_.pressure = given_pressure(nullptr);
-      const auto found = temperature_for(m_, liquid_, contact_.shares, contact_.pressure,
-                                         c_.contact.content->gas, molality(*c_.contact.content));
-      if (const auto* no = refused(found)) return *no;
-      t = std::get<Temperature>(found);
-    } else {
-      t = c_.contact.temperature->now();
-    }
-    contact_.at = at_temperature(m_, liquid_, t);
-    contact_.mixture = mix(m_, contact_.at, contact_.shares);
-    if (c_.contact.known == Known::temperature_content) {
-      const auto found = pressure_for(m_, contact_.at, contact_.mixture, c_.contact.content->gas,
-                                      molality(*c_.contact.content));
-      if (const auto* no = refused(found)) return *no;
-      contact_.pressure = std::get<Pressure>(found);
-    } else if (c_.contact.known == Known::temperature_pressure) {
-      contact_.pressure = given_pressure(nullptr);
-    }
-    if (const auto no = pressure_refusal(m_, contact_.at, contact_.shares, contact_.pressure))
-      return no;
-    contact_.contents = contents(m_, contact_.at, contact_.mixture, contact_.pressure);
-    answer_contact();
-    return std::nullopt;
-  }
-
-  void answer_contact() {
-    answer_.temperature = contact_.at.t;
-    answer_.pressure_absolute = contact_.pressure;
-    answer_.pressure_gauge = gauge(contact_.pressure, contact_.ambient);
-    answer_.ambient = contact_.ambient;
-    answer_.vapour = contact_.at.vapours.water;
-    if (liquid_.x_ethanol.value() > 0) answer_.ethanol = contact_.at.vapours.ethanol;
-    for (std::size_t i = 0; i < m_.size(); ++i) {
-      if (c_.in_contact[i] == 0) continue;
-      answer_.gases.push_back(gas_figures(i, contact_.contents, contact_.mixture, contact_.pressure,
-                                          contact_.at.vapour));
-    }
-    if (trace_ != nullptr) trace_contact();
-  }
-
-  GasFigures gas_figures(std::size_t i, const Contents& contents, const GasMixture& mixture,
-                         Pressure p, Pressure vapour) const {
-    const auto molar_mass = m_.gases[i].molar_mass.at(nullptr);
-    const auto c20 = AmountPerLitre{}(contents[i], density_of_content(nullptr));
-    GasFigures g;
-    g.gas = m_.gases[i].name;
-    g.amount_concentration = c20;
-    g.mass_concentration = MassPerLitre{}(c20, molar_mass);
-    g.volumes = VolumesOfGas{}(c20, volume_basis(m_, i, c_.ideal_volumes));
-    g.mass_fraction = contents[i] * molar_mass;
-    Molality all = Molality{};
-    for (const auto& b : contents) all += b;
-    g.mole_fraction = contents[i] / (liquid_.particles + all);
-    g.partial_pressure = DaltonsLaw{}(mixture.shares[i], p, vapour);
-    return g;
-  }
-
-  // ---- traces: every main figure once more, noted
-  // -------------------------------------------------
-
-  // The chain of one gas's content at a pressure over a mixture.
-  Molality trace_content(Temperature t, const Shares& shares, Pressure p, std::size_t gas) {
-    const auto at = at_temperature(m_, liquid_, t, {trace_, gas, &shares});
-    return content(trace_, m_, at, mix(m_, at, shares), p, gas);
-  }
-
-  void trace_contact() {
-    for (std::size_t i = 0; i < m_.size(); ++i) {
-      if (c_.in_contact[i] == 0) continue;
-      const std::string at = "dissolved." + std::string(m_.gases[i].name);
-      trace_->begin(at + ".mass_concentration");
-      if (c_.contact.known != Known::temperature_content) given_pressure(trace_);
-      const auto b = trace_content(contact_.at.t, contact_.shares, contact_.pressure, i);
-      const auto c20 = apply(trace_, AmountPerLitre{}, b, density_of_content(trace_));
-      apply(trace_, MassPerLitre{}, c20, m_.gases[i].molar_mass.at(trace_));
-      trace_->begin(at + ".volumes");
-      apply(trace_, VolumesOfGas{}, c20, volume_basis(m_, i, c_.ideal_volumes, trace_));
-    }
-    if (c_.contact.known == Known::temperature_content) {
-      trace_pressure("condition.pressure_gauge", c_.contact.content->gas, contact_.pressure);
-    } else if (c_.contact.known == Known::pressure_content) {
-      trace_->begin("condition.temperature");
-      const auto b =
-          trace_content(contact_.at.t, contact_.shares, contact_.pressure, c_.contact.content->gas);
-      apply(trace_, SolvedTemperature{contact_.at.t}, b, contact_.pressure);
-    }
-  }
-
-  void trace_pressure(std::string figure, std::size_t gas, Pressure root) {
-    trace_->begin(std::move(figure));
-    const auto b = trace_content(contact_.at.t, contact_.shares, root, gas);
-    const auto p = apply(trace_, SolvedPressure{root}, b, contact_.at.t);
-    apply(trace_, AbsoluteToGauge{}, p, ambient(trace_));
-  }
-
-  // ---- saturation -------------------------------------------------------------------------------
-
-  // Where the contact is known without the targets, they only judge: one that nothing can reach is
-  // no reason to answer nothing.
-  Maybe answer_saturation() {
-    const bool only_judge =
-        c_.contact.known == Known::temperature_pressure || !c_.content_from_target;
-    for (const auto& target : c_.targets) {
-      auto no = saturation_of(target);
-      if (no && !only_judge) return no;
-      if (no) {
-        SaturationFigures s;
-        s.gas = m_.gases[target.gas].name;
-        s.unreachable = no->code;
-        answer_.saturation.push_back(s);
-      }
-    }
-    if (c_.targets.empty() && c_.contact.content) return saturation_of(*c_.contact.content);
-    return std::nullopt;
-  }
-
-  Maybe saturation_of(const ContentCase& target) {
-    SaturationFigures s;
-    s.gas = m_.gases[target.gas].name;
-    if (c_.contact.known == Known::pressure_content) {
-      const auto found = temperature_for(m_, liquid_, contact_.shares, contact_.pressure,
-                                         target.gas, molality(target));
-      if (const auto* no = refused(found)) return *no;
-      s.temperature = std::get<Temperature>(found);
-      answer_.saturation.push_back(s);
-      if (trace_ != nullptr) trace_temperature(s, target.gas);
-      return std::nullopt;
-    }
+std::optional<Refusal> Solver::solve_contact() {
+  contact_.ambient = ambient(nullptr);
+  if (auto no = find_blend()) return no;
+  contact_.shares = contact_shares(c_, found_);
+  Temperature t;
+  if (c_.contact.known == Known::pressure_content) {
+    contact_.pressure = given_pressure(nullptr);
     const auto found =
-        pressure_for(m_, contact_.at, contact_.mixture, target.gas, molality(target));
+        temperature_for(m_, liquid_, contact_.shares, contact_.pressure, c_.contact.content->gas,
+                        molality(*c_.contact.content) / approach(), column());
     if (const auto* no = refused(found)) return *no;
-    const auto p = std::get<Pressure>(found);
-    s.pressure_absolute = p;
-    s.pressure_gauge = gauge(p, contact_.ambient);
+    t = std::get<Temperature>(found);
+  } else {
+    t = c_.contact.temperature->now();
+  }
+  contact_.at = at_temperature(m_, liquid_, t);
+  contact_.mixture = mix(m_, contact_.at, contact_.shares);
+  if (c_.contact.known == Known::temperature_content) {
+    const auto& content = *c_.contact.content;
+    const auto found = c_.content_from_target ? pressure_for_target(content.gas, molality(content))
+                                              : headspace_for(content.gas, molality(content));
+    if (const auto* no = refused(found)) return *no;
+    contact_.pressure = std::get<Pressure>(found);
+  } else if (c_.contact.known == Known::temperature_pressure) {
+    contact_.pressure = given_pressure(nullptr);
+  }
+  const auto deepest = below(contact_.at, contact_.pressure);
+  if (const auto no = pressure_refusal(m_, contact_.at, contact_.shares, deepest)) return no;
+  if (contact_.pressure <= contact_.at.vapour) {
+    return Refusal{RefusalCode::boils, contact_.pressure.value(), contact_.at.vapour.value()};
+  }
+  contact_.contents = taken_up(contact_.at, contact_.mixture, contact_.pressure);
+  answer_contact();
+  return std::nullopt;
+}
+
+void Solver::answer_contact() {
+  answer_.temperature = contact_.at.t;
+  answer_.pressure_absolute = contact_.pressure;
+  answer_.pressure_gauge = gauge(contact_.pressure, contact_.ambient);
+  answer_.ambient = contact_.ambient;
+  answer_.vapour = contact_.at.vapours.water;
+  if (liquid_.x_ethanol.value() > 0) answer_.ethanol = contact_.at.vapours.ethanol;
+  for (std::size_t i = 0; i < m_.size(); ++i) {
+    if (c_.in_contact[i] == 0) continue;
+    answer_.gases.push_back(
+        gas_figures(i, contact_.contents, contact_.mixture, contact_.pressure, contact_.at.vapour));
+  }
+  if (trace_ != nullptr) trace_contact();
+}
+
+GasFigures Solver::gas_figures(std::size_t i, const Contents& contents, const GasMixture& mixture,
+                               Pressure p, Pressure vapour) const {
+  const auto molar_mass = m_.gases[i].molar_mass.at(nullptr);
+  const auto c20 = AmountPerLitre{}(contents[i], density_of_content(nullptr));
+  GasFigures g;
+  g.gas = m_.gases[i].name;
+  g.amount_concentration = c20;
+  g.mass_concentration = MassPerLitre{}(c20, molar_mass);
+  g.volumes = VolumesOfGas{}(c20, volume_basis(m_, i, c_.ideal_volumes));
+  g.mass_fraction = contents[i] * molar_mass;
+  Molality all = Molality{};
+  for (const auto& b : contents) all += b;
+  g.mole_fraction = contents[i] / (liquid_.particles + all);
+  g.partial_pressure = DaltonsLaw{}(mixture.shares[i], p, vapour);
+  return g;
+}
+
+// Where the contact is known without the targets, they only judge: one that nothing can reach is
+// no reason to answer nothing.
+std::optional<Refusal> Solver::answer_saturation() {
+  const bool only_judge =
+      c_.contact.known == Known::temperature_pressure || !c_.content_from_target;
+  bool wished = false;
+  for (const auto& target : c_.targets) {
+    if (target.is_limit) continue;
+    wished = true;
+    auto no = saturation_of(target);
+    if (no && !only_judge) return no;
+    if (no) {
+      SaturationFigures s;
+      s.gas = m_.gases[target.gas].name;
+      s.unreachable = no->code;
+      answer_.saturation.push_back(s);
+    }
+  }
+  if (!wished && c_.contact.content) return saturation_of(*c_.contact.content);
+  return std::nullopt;
+}
+
+std::optional<Refusal> Solver::saturation_of(const ContentCase& target) {
+  SaturationFigures s;
+  s.gas = m_.gases[target.gas].name;
+  if (c_.contact.known == Known::pressure_content) {
+    const auto found = temperature_for(m_, liquid_, contact_.shares, contact_.pressure, target.gas,
+                                       molality(target) / approach(), column());
+    if (const auto* no = refused(found)) return *no;
+    s.temperature = std::get<Temperature>(found);
     answer_.saturation.push_back(s);
-    if (trace_ != nullptr) {
-      trace_pressure("saturation." + std::string(s.gas) + ".pressure_gauge", target.gas, p);
-    }
+    if (trace_ != nullptr) trace_temperature(s, target.gas);
     return std::nullopt;
   }
-
-  void trace_temperature(const SaturationFigures& s, std::size_t gas) {
-    trace_->begin("saturation." + std::string(s.gas) + ".temperature");
-    const auto t = s.temperature.value;
-    const auto b = trace_content(t, contact_.shares, contact_.pressure, gas);
-    apply(trace_, SolvedTemperature{t}, b, contact_.pressure);
+  const auto found = c_.content_from_target || c_.contact.known == Known::temperature_pressure
+                         ? pressure_for_target(target.gas, molality(target))
+                         : headspace_for(target.gas, molality(target));
+  if (const auto* no = refused(found)) return *no;
+  const auto p = std::get<Pressure>(found);
+  s.pressure_absolute = p;
+  s.pressure_gauge = gauge(p, contact_.ambient);
+  answer_.saturation.push_back(s);
+  if (trace_ != nullptr) {
+    trace_pressure("saturation." + std::string(s.gas) + ".pressure_gauge", target.gas, p);
   }
-
-  // ---- container --------------------------------------------------------------------------------
-
-  // The dry headspace at closing: its air, the rest the recipe's gas.
-  Shares headspace_at_closing() const {
-    const Fraction air = c_.container->closing_air.now();
-    Shares shares;
-    for (std::size_t i = 0; i < m_.size(); ++i) {
-      shares.push_back(c_.air[i] * air + contact_.shares[i] * (1.0 - air));
-    }
-    return shares;
-  }
-
-  Maybe answer_container() {
-    Closing closing;
-    closing.temperature = contact_.at.t;
-    closing.pressure = absolute(c_.container->closing_pressure, contact_.ambient);
-    closing.headspace = headspace_at_closing();
-    closing.contents = contact_.contents;
-    closing.fill = c_.container->fill.now();
-    closing.brimful = c_.container->brimful.now();
-    if (closing.pressure <= contact_.at.vapour) {
-      return Refusal{RefusalCode::boils, closing.pressure.value(), contact_.at.vapour.value()};
-    }
-    filling_ = close(m_, liquid_, closing);
-    const auto found = equilibrium(m_, liquid_, filling_, closing.temperature);
-    if (const auto* no = refused(found)) return *no;
-    closed_ = std::get<ClosedState>(found);
-    answer_.container.push_back(container_figures(*closed_));
-    if (trace_ != nullptr) trace_container(*closed_);
-    return std::nullopt;
-  }
-
-  ContainerFigures container_figures(const ClosedState& state) const {
-    ContainerFigures f;
-    f.temperature = state.at.t;
-    f.pressure_absolute = state.pressure;
-    f.pressure_gauge = gauge(state.pressure, contact_.ambient);
-    f.ullage = state.headspace / filling_.brimful;
-    f.vapour = state.at.vapours.water;
-    if (liquid_.x_ethanol.value() > 0) f.ethanol = state.at.vapours.ethanol;
-    for (std::size_t i = 0; i < m_.size(); ++i) {
-      if (c_.in_container[i] == 0) continue;
-      f.gases.push_back(
-          gas_figures(i, state.contents, state.mixture, state.pressure, state.at.vapour));
-    }
-    return f;
-  }
-
-  void trace_container(const ClosedState& state) {
-    trace_->begin("container.at.0.pressure_gauge");
-    const auto b = trace_state(state);
-    const auto p = apply(trace_, SolvedPressure{state.pressure}, b, state.at.t);
-    apply(trace_, AbsoluteToGauge{}, p, ambient(trace_));
-  }
-
-  // Every gas of a closed state, and the gas in its headspace; returns the content of the gas that
-  // leads it (CO2 where there is some).
-  Molality trace_state(const ClosedState& state) {
-    Molality leading{};
-    const auto& shares = state.mixture.shares;
-    for (std::size_t i = 0; i < m_.size(); ++i) {
-      if (c_.in_container[i] == 0) continue;
-      const auto at = at_temperature(m_, liquid_, state.at.t, {trace_, i, &shares, true});
-      const auto b = content(trace_, m_, at, mix(m_, at, shares), state.pressure, i);
-      if (leading.value() == 0 || i == m_.co2) leading = b;
-    }
-    gas_in_headspace(trace_, m_, state, state.pressure);
-    return leading;
-  }
-
-  // ---- opening ----------------------------------------------------------------------------------
-
-  Maybe answer_opening() {
-    Opened opened;
-    const auto& wanted = c_.opening->temperature;
-    if (c_.container) {
-      ClosedState state = *closed_;
-      if (wanted) {
-        const auto found = equilibrium(m_, liquid_, filling_, wanted->now());
-        if (const auto* no = refused(found)) return *no;
-        state = std::get<ClosedState>(found);
-      }
-      if (trace_ != nullptr) opened_state_ = state;
-      opened = open_package(m_, filling_, state, contact_.ambient, c_.air);
-    } else {
-      const auto t = wanted ? wanted->now() : contact_.at.t;
-      opened = open_liquid(m_, at_temperature(m_, liquid_, t), contact_.contents, litre());
-    }
-    if (const auto no = pressure_refusal(m_, opened.at, c_.air, contact_.ambient)) return no;
-    answer_.opening_temperature = opened.at.t;
-    for (std::size_t i = 0; i < m_.size(); ++i) {
-      if (c_.in_container[i] != 0 || c_.in_contact[i] != 0) answer_losses(opened, i);
-    }
-    return std::nullopt;
-  }
-
-  // One litre of degassed liquid at 20 °C.
-  Mass litre() const {
-    return from_si<Volume>(find_unit("L", Dimension::volume)->factor) * density_of_content(nullptr);
-  }
-
-  void answer_losses(const Opened& opened, std::size_t gas) {
-    const bool bubbles = gas == m_.co2;
-    LossFigures loss;
-    if (!bubbles) loss.gas = m_.gases[gas].name;
-    loss.headspace_loss = headspace_loss(nullptr, m_, opened, gas);
-    if (bubbles) loss.fizz_loss = fizz_loss(nullptr, m_, opened, contact_.ambient, gas);
-    loss.flat_loss = flat_loss(nullptr, m_, opened, contact_.ambient, c_.air, gas, bubbles);
-    answer_.opening.push_back(loss);
-    if (trace_ != nullptr) trace_losses(opened, gas, bubbles);
-  }
-
-  void trace_losses(const Opened& opened, std::size_t gas, bool bubbles) {
-    const std::string at =
-        bubbles ? "opening." : "opening." + std::string(m_.gases[gas].name) + ".";
-    trace_->begin(at + "headspace_loss");
-    if (opened_state_) trace_state(*opened_state_);
-    headspace_loss(trace_, m_, opened, gas);
-    if (bubbles) {
-      trace_->begin(at + "fizz_loss");
-      at_temperature(m_, liquid_, opened.at.t, {trace_, gas, nullptr});
-      fizz_loss(trace_, m_, opened, contact_.ambient, gas);
-    }
-    trace_->begin(at + "flat_loss");
-    at_temperature(m_, liquid_, opened.at.t, {trace_, gas, &c_.air});
-    flat_loss(trace_, m_, opened, contact_.ambient, c_.air, gas, bubbles);
-  }
-
-  const Case& c_;
-  const Medium& m_;
-  Trace* trace_;
-  Liquid liquid_;
-  ContactState contact_;
-  Filling filling_;
-  std::optional<ClosedState> closed_;
-  std::optional<ClosedState> opened_state_;  // for the trace
-  Answer answer_;
-};
-
-std::string bar(double pascal) {
-  return fmt::format("{} bar abs",
-                     significant(in_unit(pascal, *find_unit("bar", Dimension::pressure)), 4));
+  return std::nullopt;
 }
 
-std::string celsius(double kelvin) {
-  return fmt::format("{} °C",
-                     significant(in_unit(kelvin, *find_unit("°C", Dimension::temperature)), 4));
+Pressure Solver::closing_pressure() const {
+  if (c_.container->closing_absolute) return c_.container->closing_absolute->now();
+  return absolute(c_.container->closing_gauge.now(), contact_.ambient);
 }
 
-Finding refusal_finding(std::string code, std::string message, std::string expected) {
-  Finding f;
-  f.code = std::move(code);
-  f.message = std::move(message);
-  f.expected = std::move(expected);
+// The dry headspace at closing: its air, the rest the recipe's gas.
+Shares Solver::headspace_at_closing(Fraction air) const {
+  Shares shares;
+  for (std::size_t i = 0; i < m_.size(); ++i) {
+    shares.push_back(c_.air[i] * air + contact_.shares[i] * (1.0 - air));
+  }
+  return shares;
+}
+
+// What is left in the liquid at closing: filling losses off, its oxygen as measured.
+Contents Solver::at_closing(Contents reached) const {
+  for (const auto& loss : c_.container->filling_loss) {
+    reached[loss.gas] = std::max(reached[loss.gas] - molality(loss), Molality{});
+  }
+  if (c_.container->closing_oxygen) {
+    reached[c_.container->closing_oxygen->gas] = molality(*c_.container->closing_oxygen);
+  }
+  return reached;
+}
+
+OrRefusal<Closing> Solver::closing_with(const Contents& reached) const {
+  const auto& given = *c_.container;
+  Closing closing;
+  closing.temperature =
+      given.closing_temperature ? given.closing_temperature->now() : contact_.at.t;
+  closing.pressure = closing_pressure();
+  closing.contents = at_closing(reached);
+  if (given.fill) closing.fill = given.fill->now();
+  if (given.fill_mass) closing.fill_mass = given.fill_mass->now();
+  closing.brimful = given.brimful.now();
+  const auto at = at_temperature(m_, liquid_, closing.temperature);
+  if (closing.pressure <= at.vapour) {
+    return Refusal{RefusalCode::boils, closing.pressure.value(), at.vapour.value()};
+  }
+  const auto headspace = closing.brimful - liquid_volume(m_, at, closing);
+  if (!(headspace.value() > 0)) {
+    return Refusal{RefusalCode::container_without_space, headspace.value(),
+                   closing.brimful.value()};
+  }
+  Fraction air = given.closing_air.now();
+  if (given.closing_air_volume) {
+    // Amounts at the same temperature: p_amb V_air of (p − p_v) V_H.
+    air = contact_.ambient * given.closing_air_volume->now() /
+          ((closing.pressure - at.vapour) * headspace);
+    if (air.value() > 1) {
+      return Refusal{RefusalCode::air_exceeds_headspace, air.value(), 1};
+    }
+  }
+  closing.headspace = headspace_at_closing(air);
+  if (given.nitrogen_dose) {
+    for (std::size_t i = 0; i < m_.size(); ++i) {
+      if (m_.gases[i].name == "N2") closing.nitrogen = i;
+    }
+    closing.nitrogen_dose =
+        given.nitrogen_dose->now() / m_.gases[closing.nitrogen].molar_mass.at(nullptr);
+  }
+  return closing;
+}
+
+std::optional<Refusal> Solver::answer_container() {
+  const auto closing = closing_with(contact_.contents);
+  if (const auto* no = refused(closing)) return *no;
+  const auto& closed = std::get<Closing>(closing);
+  filling_ = close(m_, liquid_, closed);
+  const auto found = equilibrium(m_, liquid_, filling_, closed.temperature);
+  if (const auto* no = refused(found)) return *no;
+  closed_ = std::get<ClosedState>(found);
+  answer_.container.push_back(container_figures(*closed_));
+  if (trace_ != nullptr) trace_container(*closed_);
+  return std::nullopt;
+}
+
+ContainerFigures Solver::container_figures(const ClosedState& state) const {
+  ContainerFigures f;
+  f.temperature = state.at.t;
+  f.pressure_absolute = state.pressure;
+  f.pressure_gauge = gauge(state.pressure, contact_.ambient);
+  f.ullage = state.headspace / filling_.brimful;
+  if (c_.container->rated_gauge) {
+    f.margin = *c_.container->rated_gauge - f.pressure_gauge.value;
+  } else if (c_.container->rated_absolute) {
+    f.margin = *c_.container->rated_absolute - state.pressure;
+  }
+  f.vapour = state.at.vapours.water;
+  if (liquid_.x_ethanol.value() > 0) f.ethanol = state.at.vapours.ethanol;
+  for (std::size_t i = 0; i < m_.size(); ++i) {
+    if (c_.in_container[i] == 0) continue;
+    f.gases.push_back(
+        gas_figures(i, state.contents, state.mixture, state.pressure, state.at.vapour));
+  }
   return f;
 }
 
-Finding explain_boiling(const Refusal& r) {
-  if (r.value <= 0) {
-    return refusal_finding("below-vacuum",
-                           "a gauge reading that low lies below a vacuum at this ambient pressure",
-                           "a reading above minus the ambient pressure");
+std::optional<Refusal> Solver::answer_opening() {
+  Opened opened;
+  const auto& wanted = c_.opening->temperature;
+  if (c_.container) {
+    ClosedState state = *closed_;
+    if (wanted) {
+      const auto found = equilibrium(m_, liquid_, filling_, wanted->now());
+      if (const auto* no = refused(found)) return *no;
+      state = std::get<ClosedState>(found);
+    }
+    if (trace_ != nullptr) opened_state_ = state;
+    opened = open_package(m_, filling_, state, contact_.ambient, c_.air);
+  } else {
+    const auto t = wanted ? wanted->now() : contact_.at.t;
+    opened = open_liquid(m_, at_temperature(m_, liquid_, t), contact_.contents, litre());
   }
-  const std::string_view where = r.asked_by == AskedBy::closing   ? "when the package is closed, "
-                                 : r.asked_by == AskedBy::opening ? "when it is opened, "
-                                                                  : "";
-  return refusal_finding("boils",
-                         fmt::format("{}at {} the liquid boils: its own vapour pressure is {}",
-                                     where, bar(r.value), bar(r.bound)),
-                         r.asked_by == AskedBy::contact ? "a higher pressure or a lower temperature"
-                                                        : "a lower temperature");
+  if (const auto no = pressure_refusal(m_, opened.at, c_.air, contact_.ambient)) return no;
+  answer_.opening_temperature = opened.at.t;
+  for (std::size_t i = 0; i < m_.size(); ++i) {
+    if (c_.in_container[i] != 0 || c_.in_contact[i] != 0) answer_losses(opened, i);
+  }
+  return std::nullopt;
 }
 
-}  // namespace
+// One litre of degassed liquid at 20 °C.
+Mass Solver::litre() const {
+  return from_si<Volume>(find_unit("L", Dimension::volume)->factor) * density_of_content(nullptr);
+}
 
-OrRefusal<Answer> solve(const Case& c, Trace* trace) { return Solver(c, trace).run(); }
+void Solver::answer_losses(const Opened& opened, std::size_t gas) {
+  const bool bubbles = gas == m_.co2;
+  LossFigures loss;
+  if (!bubbles) loss.gas = m_.gases[gas].name;
+  loss.headspace_loss = headspace_loss(nullptr, m_, opened, gas);
+  if (bubbles) loss.fizz_loss = fizz_loss(nullptr, m_, opened, contact_.ambient, gas);
+  loss.flat_loss = flat_loss(nullptr, m_, opened, contact_.ambient, c_.air, gas, bubbles);
+  answer_.opening.push_back(loss);
+  if (trace_ != nullptr) trace_losses(opened, gas, bubbles);
+}
 
-Finding explain(const Refusal& r) {
-  switch (r.code) {
-    case RefusalCode::boils: return explain_boiling(r);
-    case RefusalCode::temperature_beyond_model:
-      return refusal_finding(
-          "temperature-beyond-model",
-          fmt::format("{} is beyond what the laws of this liquid may be used for, which end at {}",
-                      celsius(r.value), celsius(r.bound)),
-          "a temperature between freezing and boiling");
-    case RefusalCode::pressure_beyond_model:
-      return refusal_finding(
-          "pressure-beyond-model",
-          fmt::format("a pressure of {} or more is beyond the gas law, which ends at {}",
-                      bar(r.value), bar(r.bound)),
-          "a lower pressure, content, temperature or fill");
-    case RefusalCode::condenses:
-      return refusal_finding("condenses",
-                             fmt::format("CO2 would condense: its partial pressure {} is not "
-                                         "below {}",
-                                         bar(r.value), bar(r.bound)),
-                             "a lower pressure or a warmer liquid");
-    case RefusalCode::no_pressure_holds:
-      return refusal_finding("no-pressure-holds",
-                             fmt::format("no pressure up to {} dissolves that much", bar(r.bound)),
-                             "a lower content, a colder liquid, or more of that gas in the "
-                             "headspace");
-    case RefusalCode::no_temperature_holds:
-      return refusal_finding(
-          "no-temperature-holds",
-          fmt::format("even at {} the liquid holds less than that at this pressure",
-                      celsius(r.bound)),
-          "a higher pressure or a lower content");
-    case RefusalCode::too_little_everywhere:
-      return refusal_finding(
-          "too-little-everywhere",
-          fmt::format("up to {} the liquid holds more than that at this pressure",
-                      celsius(r.bound)),
-          "a lower pressure or a higher content");
-    case RefusalCode::container_without_space:
-      return refusal_finding("container-without-space",
-                             "the liquid fills the whole container: no headspace is left and its "
-                             "pressure has no upper bound",
-                             "a smaller fill");
-    case RefusalCode::nothing_of_that_gas:
-      return refusal_finding("nothing-of-that-gas",
-                             "a content is asked of a gas that the headspace does not hold",
-                             "a share of that gas under [gas]");
-    case RefusalCode::no_number: break;
-  }
-  return refusal_finding("no-number", "these inputs lead to no finite figure",
-                         "values that can occur in a plant");
+}  // namespace answer_detail
+
+OrRefusal<Answer> solve(const Case& c, Trace* trace) {
+  return answer_detail::Solver(c, trace).run();
 }
 
 }  // namespace capsigh

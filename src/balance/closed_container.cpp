@@ -3,7 +3,7 @@
 #include <cmath>
 #include <numeric>
 
-#include "root.hpp"
+#include "capsigh/balance/root.hpp"
 
 namespace capsigh {
 namespace {
@@ -104,19 +104,44 @@ Amount gas_in_headspace(Trace* trace, const Medium& m, const ClosedState& state,
                compressibility(trace, m, state.at, state.mixture, p), state.at.t);
 }
 
+namespace {
+
+double volume_per_mass(const AtTemperature& at, const Contents& contents) {
+  return 1.0 / at.density.value() + swelling(at, contents);
+}
+
+// Degassed liquid behind the fill.
+Mass degassed(const Medium& m, const AtTemperature& at, const Closing& closing) {
+  if (!(closing.fill_mass.value() > 0)) {
+    return from_si<Mass>(closing.fill.value() / volume_per_mass(at, closing.contents));
+  }
+  double gas_per_mass = 0;
+  for (std::size_t i = 0; i < m.size(); ++i) {
+    gas_per_mass += (closing.contents[i] * m.gases[i].molar_mass.at(nullptr)).value();
+  }
+  return closing.fill_mass / (1.0 + gas_per_mass);
+}
+
+}  // namespace
+
+Volume liquid_volume(const Medium& m, const AtTemperature& at, const Closing& closing) {
+  return from_si<Volume>(degassed(m, at, closing).value() * volume_per_mass(at, closing.contents));
+}
+
 Filling close(const Medium& m, const Liquid& liquid, const Closing& closing) {
   ClosedState state;
   state.at = at_temperature(m, liquid, closing.temperature);
   state.mixture = mix(m, state.at, closing.headspace);
-  state.headspace = closing.brimful - closing.fill;
+  state.headspace = closing.brimful - liquid_volume(m, state.at, closing);
   Filling filling;
   filling.brimful = closing.brimful;
-  const double volume_per_mass =
-      1.0 / state.at.density.value() + swelling(state.at, closing.contents);
-  filling.liquid = from_si<Mass>(closing.fill.value() / volume_per_mass);
+  filling.liquid = degassed(m, state.at, closing);
   const Amount gas = gas_in_headspace(nullptr, m, state, closing.pressure);
   for (std::size_t i = 0; i < m.size(); ++i) {
     filling.amounts.push_back(closing.contents[i] * filling.liquid + closing.headspace[i] * gas);
+  }
+  if (closing.nitrogen < m.size()) {
+    filling.amounts[closing.nitrogen] += closing.nitrogen_dose;
   }
   return filling;
 }
@@ -129,7 +154,7 @@ OrRefusal<ClosedState> equilibrium(const Medium& m, const Liquid& liquid, const 
   // Just above the vapour pressure the shares needed to hold the moles exceed one; at the limit of
   // the model they fall below it, or the package is beyond it.
   const double low = at.vapour.value() * (1.0 + 1e-9);
-  const auto root = balance_detail::root_between(residual, low, m.pressure_limit.value());
+  const auto root = root_between(residual, low, m.pressure_limit.value());
   if (!root) {
     return Refusal{RefusalCode::pressure_beyond_model, m.pressure_limit.value(),
                    m.pressure_limit.value()};

@@ -3,7 +3,7 @@
 #include <algorithm>
 #include <cmath>
 
-#include "root.hpp"
+#include "capsigh/balance/root.hpp"
 
 namespace capsigh {
 
@@ -53,7 +53,11 @@ Fraction convention_factor(Trace* trace, const Medium& m, const AtTemperature& a
                            const GasMixture& mixture, Pressure p) {
   const auto over_pure = mixture.shares[m.co2] * (p - at.vapour) + at.vapour;
   const auto& range = m.convention.pressure;
-  const auto read_at = from_si<Pressure>(std::clamp(over_pure.value(), range.low, range.high));
+  // Near the vapour pressure a relation says nothing: there it is read where some CO2 is.
+  const double least =
+      std::max(range.low, (at.convention_at.vapour + m.convention.least_partial).value());
+  const auto read_at =
+      from_si<Pressure>(std::clamp(over_pure.value(), least, std::max(least, range.high)));
   return apply_defined(trace, m.convention.record, {at.t, over_pure}, ConventionFactor{},
                        by_relation(m, at, read_at), of_pure(m, at.convention_at, read_at));
 }
@@ -108,7 +112,7 @@ OrRefusal<Pressure> pressure_for(const Medium& m, const AtTemperature& at,
   };
   // At the vapour pressure itself there is no gas, and a convention's factor has no value.
   const double low = at.vapour.value() * (1.0 + 1e-9);
-  const auto root = balance_detail::root_between(residual, low, m.pressure_limit.value());
+  const auto root = root_between(residual, low, m.pressure_limit.value());
   if (!root) {
     return Refusal{RefusalCode::no_pressure_holds, wanted.value(), m.pressure_limit.value()};
   }
@@ -116,14 +120,16 @@ OrRefusal<Pressure> pressure_for(const Medium& m, const AtTemperature& at,
 }
 
 OrRefusal<Temperature> temperature_for(const Medium& m, const Liquid& liquid, const Shares& shares,
-                                       Pressure p, std::size_t gas, Molality wanted) {
+                                       Pressure p, std::size_t gas, Molality wanted,
+                                       const LiquidColumn& column) {
   if (!(shares[gas].value() > 0)) {
     return Refusal{RefusalCode::nothing_of_that_gas, wanted.value(), 0};
   }
   const auto residual = [&](double kelvin) {
     const auto at = at_temperature(m, liquid, from_si<Temperature>(kelvin));
     if (p <= at.vapour) return -wanted.value();  // boiling liquid holds nothing
-    return (content(nullptr, m, at, mix(m, at, shares), p, gas) - wanted).value();
+    const auto below = p + HydrostaticHead{column.gravity}(at.density, column.depth);
+    return (content(nullptr, m, at, mix(m, at, shares), below, gas) - wanted).value();
   };
   // A gas may have a minimum of solubility and two temperatures: the coldest is taken, found by
   // walking up from the cold end.
@@ -135,7 +141,7 @@ OrRefusal<Temperature> temperature_for(const Medium& m, const Liquid& liquid, co
     return Refusal{RefusalCode::no_temperature_holds, wanted.value(), search.low};
   }
   for (int i = 0; i < steps; ++i, low += step) {
-    if (const auto root = balance_detail::root_between(residual, low, low + step)) {
+    if (const auto root = root_between(residual, low, low + step)) {
       return from_si<Temperature>(*root);
     }
   }

@@ -60,7 +60,9 @@ Mass flat_loss(Trace* trace, const Medium& m, const Opened& opened, Pressure amb
                const Shares& air, std::size_t gas, bool bubbles) {
   const auto& at = opened.at;
   const Molality b = opened.contents[gas];
-  const auto with_air = content(trace, m, at, mix(m, at, air), ambient, gas);
+  // Not noted: a trade's relation is far below its range at the CO2 of air, where next to nothing
+  // stays dissolved, and a caution about it would only distract.
+  const auto with_air = content(nullptr, m, at, mix(m, at, air), ambient, gas);
   const auto saturated =
       bubbles ? content(trace, m, at, mix(m, at, pure(m, gas)), ambient, gas) : b;
   return apply(trace, FlatLoss{}, b, saturated, with_air, opened.liquid, opened.stays[gas],

@@ -17,6 +17,9 @@ enum Exit : int { done = 0, out_of_tolerance = 1, bad_input = 2, system_failed =
 
 struct ReportArguments {
   std::vector<std::string> recipes;
+  std::vector<std::string> with;
+  std::vector<std::string> sets;
+  std::vector<std::string> units;
   std::string as = "text";
   std::string out;
   bool strict = false;
@@ -34,30 +37,108 @@ int deliver(const std::string& text, const std::string& path) {
   return done;
 }
 
-int run_report(const ReportArguments& arguments, const Library& library) {
-  std::vector<Report> reports;
+// The units of --units, or a finding for a name that is none.
+Outcome<std::vector<const Unit*>> display_units(const std::vector<std::string>& names) {
+  std::vector<const Unit*> units;
+  for (const auto& name : names) {
+    const auto all = unit_table();
+    const auto it =
+        std::find_if(all.begin(), all.end(), [&](const Unit& u) { return u.text == name; });
+    if (it == all.end()) {
+      Finding f;
+      f.code = "unit-unknown";
+      f.message = "--units: '" + name + "' is no unit known here";
+      f.expected = "units such as psi,degF,g/L";
+      return {{}, {f}};
+    }
+    units.push_back(&*it);
+  }
+  return {units, {}};
+}
+
+// A recipe with what --with lays under it and --set sets, as one document; `texts` collects the
+// bytes that the digest identifies.
+struct Assembled {
+  std::optional<Node> document;
+  Findings findings;
+  int status = done;
+};
+
+Assembled assemble(const std::string& path, const ReportArguments& arguments, std::string& texts) {
+  Assembled all;
+  all.document = Node{};
+  all.document->kind = Node::Kind::table;
+  std::vector<std::string> files = arguments.with;
+  if (!path.empty()) files.push_back(path);
+  for (const auto& file : files) {
+    const auto text = cli::read_input(file);
+    if (!text) return {{}, text.findings, system_failed};
+    texts += *text;
+    const auto document = parse_document(*text, file == "-" ? "standard input" : file);
+    if (!document) return {{}, document.findings, bad_input};
+    overlay(*all.document, *document);
+    all.document->place = document->place;
+  }
+  for (const auto& set : arguments.sets) {
+    texts += set + "\n";
+    const auto assignment = parse_assignment(set);
+    if (!assignment) return {{}, assignment.findings, bad_input};
+    overlay(*all.document, *assignment);
+  }
+  return all;
+}
+
+std::string rendered(const std::vector<std::pair<std::string, Report>>& reports,
+                     const ReportArguments& arguments, const std::vector<const Unit*>& units) {
+  if (arguments.as == "csv") return csv_reports(reports);
+  if (arguments.as == "json") {
+    std::vector<Report> all;
+    for (const auto& [file, report] : reports) all.push_back(report);
+    return json_reports(all, arguments.trace);
+  }
+  std::string text;
+  for (const auto& [file, report] : reports) {
+    if (!text.empty()) text += "\n" + std::string(80, '=') + "\n\n";
+    text += text_report(report, {arguments.trace, units});
+  }
+  return text;
+}
+
+int run_report(ReportArguments arguments, const Library& library) {
+  const auto units = display_units(arguments.units);
+  if (!units) return fail(units.findings, bad_input);
+  if (arguments.recipes.empty()) {
+    if (arguments.sets.empty()) {
+      Finding f;
+      f.code = "no-recipe";
+      f.message = "report needs a recipe, or keys to --set";
+      f.example =
+          "capsigh report can.toml\ncapsigh report --set contact.temperature=\"4 degC\" "
+          "--set contact.pressure=\"2.3 bar gauge\"";
+      return fail({f}, bad_input);
+    }
+    arguments.recipes.emplace_back();
+  }
+  std::vector<std::pair<std::string, Report>> reports;
   int status = done;
   for (const auto& path : arguments.recipes) {
-    const auto text = cli::read_input(path);
-    if (!text) return fail(text.findings, system_failed);
-    const auto document = parse_document(*text, path == "-" ? "standard input" : path);
-    if (!document) return fail(document.findings, bad_input);
-    const auto recipe = read_recipe(*document, path);
-    auto answered = report(recipe, *text, library, {.strict = arguments.strict});
+    std::string texts;
+    const auto assembled = assemble(path, arguments, texts);
+    if (!assembled.document) return fail(assembled.findings, assembled.status);
+    const std::string name = path.empty() ? "--set" : path == "-" ? "standard input" : path;
+    auto answered = report(read_recipe(*assembled.document, name), texts, library,
+                           {.strict = arguments.strict});
     if (!answered) {
       status = fail(answered.findings, bad_input);
       continue;
     }
-    reports.push_back(std::move(*answered.value));
+    reports.emplace_back(name, std::move(*answered.value));
   }
   if (status != done) return status;
-  if (arguments.as == "json") return deliver(json_reports(reports, arguments.trace), arguments.out);
-  std::string text;
-  for (const auto& report : reports) {
-    if (!text.empty()) text += "\n" + std::string(80, '=') + "\n\n";
-    text += text_report(report, arguments.trace);
-  }
-  return deliver(text, arguments.out);
+  status = deliver(rendered(reports, arguments, *units), arguments.out);
+  const bool met = std::all_of(reports.begin(), reports.end(),
+                               [](const auto& r) { return r.second.limits_met; });
+  return status != done || met ? status : out_of_tolerance;
 }
 
 int run_constants(const std::string& name, const std::string& as, const std::string& out,
@@ -82,10 +163,17 @@ int run(int argc, char** argv) {
 
   ReportArguments arguments;
   auto* report_command = app.add_subcommand("report", "answer all that a recipe asks");
-  report_command->add_option("RECIPE", arguments.recipes, "recipe files; - is standard input")
-      ->required();
+  report_command->add_option("RECIPE", arguments.recipes, "recipe files; - is standard input");
+  report_command->add_option("--with", arguments.with, "lay this shared file under the recipe")
+      ->take_all()
+      ->expected(1);
+  report_command->add_option("--set", arguments.sets, "set one key: contact.temperature=\"4 degC\"")
+      ->take_all()
+      ->expected(1);
+  report_command->add_option("--units", arguments.units, "units to display: psi,degF,g/L")
+      ->delimiter(',');
   report_command->add_option("--as", arguments.as, "form of the output")
-      ->check(CLI::IsMember({"text", "json"}));
+      ->check(CLI::IsMember({"text", "json", "csv"}));
   report_command->add_option("--out", arguments.out, "write to this file");
   report_command->add_flag("--strict", arguments.strict, "refuse what is outside its range");
   report_command->add_flag("--trace", arguments.trace, "show how each figure came about");

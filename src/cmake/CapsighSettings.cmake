@@ -20,8 +20,10 @@ target_compile_options(capsigh_settings INTERFACE -ffp-contract=off)
 if(CAPSIGH_WERROR)
   target_compile_options(capsigh_settings INTERFACE -Werror)
   if(CMAKE_CXX_COMPILER_ID STREQUAL "GNU")
-    # A false positive of g++ 12 inside std::variant and std::optional once they are inlined.
-    target_compile_options(capsigh_settings INTERFACE -Wno-error=maybe-uninitialized)
+    # False positives of g++ 12: inside std::variant and std::optional once they are inlined, and in
+    # operator+ of std::string (GCC bug 105651).
+    target_compile_options(capsigh_settings INTERFACE -Wno-error=maybe-uninitialized
+                           -Wno-restrict)
   endif()
 endif()
 if(CAPSIGH_SANITIZE)

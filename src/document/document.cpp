@@ -185,4 +185,81 @@ Place place_inside(const Node& text_value, std::size_t offset, std::size_t lengt
   return place;
 }
 
+void overlay(Node& base, const Node& top) {
+  for (const auto& member : top.members) {
+    const auto it = std::find_if(base.members.begin(), base.members.end(),
+                                 [&](const Member& m) { return m.key == member.key; });
+    if (it == base.members.end()) {
+      base.members.push_back(member);
+    } else if (it->value.kind == Node::Kind::table && member.value.kind == Node::Kind::table) {
+      overlay(it->value, member.value);
+    } else {
+      *it = member;
+    }
+  }
+}
+
+namespace {
+
+// Places of an assignment show the argument as it was typed.
+void place_in_argument(Node& node, const Place& place) {
+  node.place = place;
+  for (auto& item : node.items) place_in_argument(item, place);
+  for (auto& member : node.members) {
+    member.key_place = place;
+    place_in_argument(member.value, place);
+  }
+}
+
+bool keeps_its_type(const Node& node) {
+  return node.kind == Node::Kind::integer || node.kind == Node::Kind::real ||
+         node.kind == Node::Kind::boolean || node.kind == Node::Kind::array ||
+         node.kind == Node::Kind::table;
+}
+
+std::string quoted(const std::string& value) {
+  std::string text = "\"";
+  for (const char c : value) {
+    if (c == '"' || c == '\\') text += '\\';
+    text += c;
+  }
+  return text + "\"";
+}
+
+}  // namespace
+
+Outcome<Node> parse_assignment(const std::string& argument) {
+  const Place place{"--set", 1, 1, argument.size(), argument};
+  const std::size_t equals = argument.find('=');
+  if (equals == std::string::npos || equals == 0) {
+    Finding f;
+    f.code = "assignment";
+    f.message = "'" + argument + "' does not set a key";
+    f.expected = "a key, = and a value";
+    f.example = "--set contact.temperature=\"4 degC\"";
+    f.place = place;
+    return {{}, {f}};
+  }
+  const std::string key = argument.substr(0, equals);
+  const std::string value = argument.substr(equals + 1);
+  auto typed = parse_document(key + " = " + value + "\n", "--set");
+  const auto leaf = [](const Node& document) {
+    const Node* node = &document;
+    while (node->kind == Node::Kind::table && node->members.size() == 1) {
+      node = &node->members.front().value;
+    }
+    return node;
+  };
+  const bool table = value.find('{') != std::string::npos;
+  if (!typed || !(table || keeps_its_type(*leaf(*typed)))) {
+    typed = parse_document(key + " = " + quoted(value) + "\n", "--set");
+  }
+  if (!typed) {
+    for (auto& f : typed.findings) f.place = place;
+    return typed;
+  }
+  place_in_argument(*typed.value, place);
+  return typed;
+}
+
 }  // namespace capsigh

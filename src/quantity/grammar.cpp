@@ -274,6 +274,13 @@ GrammarFault unit_fault(const std::string& unit_text, std::size_t start, std::si
   if (unit_text.empty()) {
     return fault(start, 1, "unit-missing", "the number has no unit", wanted);
   }
+  for (const std::string_view broken : {"Â", "+-", "\xEF\xBF\xBD", "?"}) {
+    if (unit_text.find(broken) == std::string::npos) continue;
+    return fault(start, length, "plus-minus-broken",
+                 fmt::format("'{}' is not understood; if a ± came through broken here, write '+/-'",
+                             unit_text),
+                 wanted);
+  }
   if (unit_text == "°") {
     return fault(start, length, "degree-of-what", "'°' alone does not say which degree is meant",
                  wanted);

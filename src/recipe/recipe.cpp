@@ -46,6 +46,17 @@ class Reader {
     return {node, name, recipe_, findings_};
   }
 
+  // The { } group behind a key of a section; a complaint if it is something else.
+  static const Node* subgroup(Section& s, const std::string& key, const std::string& example) {
+    const Member* member = s.take(key);
+    if (member == nullptr) return nullptr;
+    if (member->value.kind == Node::Kind::table) return &member->value;
+    s.complain(member->value.place, "not-a-section",
+               fmt::format("'{}' is {}, not a {{ }} group", key, kind_name(member->value.kind)),
+               "a { } group of keys", example);
+    return nullptr;
+  }
+
   void read_about(Section& top) {
     if (const Node* node = table(top, "about")) {
       recipe_.about = section(*node, "about").free_text();
@@ -109,8 +120,10 @@ class Reader {
                    "a { } group of gases and contents", "dissolved = { CO2 = \"3.7 vol\" }");
       }
     }
-    contact.altitude = s.length("altitude", "350 m");
+    contact.altitude = s.length("altitude", "350 m", recipe_detail::Sign::any);
     contact.ambient = s.absolute_pressure("ambient", "978 hPa");
+    contact.depth = s.length("depth", "3 m", recipe_detail::Sign::not_negative);
+    contact.approach = s.share("approach", "95 %", recipe_detail::Sign::positive);
     s.finish();
     recipe_.contact = std::move(contact);
   }
@@ -118,7 +131,9 @@ class Reader {
   void read_target(Section& top) {
     const Node* node = table(top, "target");
     if (node == nullptr) return;
-    recipe_.target = section(*node, "target").contents();
+    Section s = section(*node, "target");
+    recipe_.target_at = s.text("at", "package");
+    recipe_.target = s.targets();
   }
 
   void read_container(Section& top) {
@@ -129,17 +144,19 @@ class Reader {
     container.place = node->place;
     container.brimful = s.volume("brimful", "355 mL");
     container.fill = s.volume("fill", "330 mL");
-    if (const Member* member = s.take("closed_at")) {
-      if (member->value.kind == Node::Kind::table) {
-        Section closed = section(member->value, "container.closed_at");
-        container.closing_air = closed.share("air", "30 %");
-        closed.finish();
-      } else {
-        s.complain(member->value.place, "not-a-section",
-                   fmt::format("'container.closed_at' is {}, not a {{ }} group",
-                               kind_name(member->value.kind)),
-                   "what the package is closed at", "closed_at = { air = \"30 %\" }");
-      }
+    container.fill_mass = s.mass("fill_mass", "341 g");
+    container.rated = s.pressure("rated", "6.2 bar gauge");
+    container.nitrogen_dose = s.mass("nitrogen_dose", "80 mg");
+    if (const Node* group = subgroup(s, "closed_at", "container.closed_at = { air = \"30 %\" }")) {
+      Section closed = section(*group, "container.closed_at");
+      container.closing_temperature = closed.temperature("temperature", "6 degC");
+      container.closing_pressure = closed.pressure("pressure", "0 bar gauge");
+      closed.air("air", container.closing_air, container.closing_air_volume);
+      container.closing_oxygen = closed.content_of("dissolved_oxygen", "O2");
+      closed.finish();
+    }
+    if (const Node* group = subgroup(s, "filling_loss", "filling_loss = { CO2 = \"0.05 vol\" }")) {
+      container.filling_loss = section(*group, "container.filling_loss").contents();
     }
     s.finish();
     recipe_.container = std::move(container);

@@ -125,16 +125,18 @@ std::optional<Given<Volume>> Section::volume(const std::string& key, std::string
   return given<Volume>(*member, Dimension::volume, example, false, Sign::positive);
 }
 
-std::optional<Given<Length>> Section::length(const std::string& key, std::string_view example) {
+std::optional<Given<Length>> Section::length(const std::string& key, std::string_view example,
+                                             Sign sign) {
   const Member* member = take(key);
   if (member == nullptr) return std::nullopt;
-  return given<Length>(*member, Dimension::length, example, false, Sign::any);
+  return given<Length>(*member, Dimension::length, example, false, sign);
 }
 
-std::optional<Given<Fraction>> Section::share(const std::string& key, std::string_view example) {
+std::optional<Given<Fraction>> Section::share(const std::string& key, std::string_view example,
+                                              Sign sign) {
   const Member* member = take(key);
   if (member == nullptr) return std::nullopt;
-  auto g = given<Fraction>(*member, Dimension::fraction, example, false, Sign::not_negative);
+  auto g = given<Fraction>(*member, Dimension::fraction, example, false, sign);
   if (g.value && g.value->value() > 1) {
     complain(member->value.place, "impossible-value",
              fmt::format("'{}' is more than 100 %", full_key(key)), "0 to 100 %",
@@ -229,11 +231,81 @@ std::vector<GivenSolute> Section::salts() {
   return all;
 }
 
-GivenContent Section::content(const Member& member) {
+std::optional<Given<Mass>> Section::mass(const std::string& key, std::string_view example) {
+  const Member* member = take(key);
+  if (member == nullptr) return std::nullopt;
+  return given<Mass>(*member, Dimension::mass, example, false, Sign::positive);
+}
+
+void Section::air(const std::string& key, std::optional<Given<Fraction>>& share_out,
+                  std::optional<Given<Volume>>& volume_out) {
+  const Member* member = take(key);
+  if (member == nullptr) return;
+  const Node& node = member->value;
+  const std::string_view text = node.text;
+  const bool by_volume = node.kind == Node::Kind::text &&
+                         text.find('%') == std::string_view::npos &&
+                         text.find('L') != std::string_view::npos;
+  if (by_volume) {
+    volume_out = given<Volume>(*member, Dimension::volume, "1.2 mL", false, Sign::not_negative);
+  } else {
+    share_out = share(key, "30 %");
+  }
+}
+
+std::optional<GivenContent> Section::content_of(const std::string& key, const std::string& gas) {
+  const Member* member = take(key);
+  if (member == nullptr) return std::nullopt;
+  auto c = content(*member, "30 ug/L");
+  c.gas.text = gas;
+  return c;
+}
+
+GivenTarget Section::target(const Member& member) {
+  GivenTarget t;
+  if (member.value.kind != Node::Kind::table) {
+    t.content = content(member);
+    return t;
+  }
+  Section limits(member.value, full_key(member.key), recipe_, findings_);
+  for (const bool maximum : {true, false}) {
+    const Member* limit = limits.take(maximum ? "max" : "min");
+    if (limit == nullptr) continue;
+    t.content = limits.content(*limit, "50 ug/L");
+    t.content.gas = {member.key, member.key_place};
+    t.is_maximum = maximum;
+    t.is_minimum = !maximum;
+  }
+  limits.finish();
+  if (!t.is_maximum && !t.is_minimum) {
+    complain(member.value.place, "target-empty",
+             fmt::format("'{}' names no limit", full_key(member.key)), "max or min",
+             member.key + " = { max = \"50 ug/L\" }");
+    t.content.gas = {member.key, member.key_place};
+  }
+  if (limits.table_.find("max") != nullptr && limits.table_.find("min") != nullptr) {
+    complain(member.value.place, "target-two-limits",
+             fmt::format("'{}' has both a max and a min", full_key(member.key)),
+             "one of them, or a content with its tolerance",
+             member.key + " = \"3.7 vol ± 0.1 vol\"");
+  }
+  return t;
+}
+
+std::vector<GivenTarget> Section::targets() {
+  std::vector<GivenTarget> all;
+  for (const auto& member : table_.members) {
+    if (std::find(known_.begin(), known_.end(), member.key) != known_.end()) continue;
+    all.push_back(target(member));
+  }
+  return all;
+}
+
+GivenContent Section::content(const Member& member, std::string_view example) {
   GivenContent c;
   c.gas = {member.key, member.key_place};
   c.amount.source = {member.value.text, member.value.place};
-  if (const auto q = quantity(member, kContentDimensions, "3.7 vol", false, Sign::positive)) {
+  if (const auto q = quantity(member, kContentDimensions, example, false, Sign::positive)) {
     c.measure = measure_of(q->dimension);
     c.amount.value = Fraction(q->value);
     if (q->plus_minus) c.amount.plus_minus = Fraction(*q->plus_minus);
@@ -252,8 +324,10 @@ std::vector<GivenShare> Section::shares() {
   for (const auto& member : table_.members) {
     GivenShare s;
     s.name = {member.key, member.key_place};
-    if (member.value.kind == Node::Kind::text && member.value.text == "rest") {
-      s.rest = true;
+    const bool text = member.value.kind == Node::Kind::text;
+    if (text && (member.value.text == "rest" || member.value.text == "find")) {
+      s.rest = member.value.text == "rest";
+      s.find = !s.rest;
       s.share.source = {member.value.text, member.value.place};
       recipe_.inputs.emplace_back(full_key(member.key), member.value.text);
     } else if (auto g = share(member.key, "99.9 %")) {

@@ -27,9 +27,16 @@ class Section {
   std::optional<Given<Pressure>> absolute_pressure(const std::string& key,
                                                    std::string_view example);
   std::optional<Given<Volume>> volume(const std::string& key, std::string_view example);
-  std::optional<Given<Length>> length(const std::string& key, std::string_view example);
-  std::optional<Given<Fraction>> share(const std::string& key, std::string_view example);
+  std::optional<Given<Length>> length(const std::string& key, std::string_view example, Sign sign);
+  std::optional<Given<Fraction>> share(const std::string& key, std::string_view example,
+                                       Sign sign = Sign::not_negative);
   std::optional<LocatedText> text(const std::string& key, std::string_view example);
+  std::optional<Given<Mass>> mass(const std::string& key, std::string_view example);
+  /// A key that is a share of the headspace or a volume: whichever it is is filled.
+  void air(const std::string& key, std::optional<Given<Fraction>>& share,
+           std::optional<Given<Volume>>& volume);
+  std::optional<GivenContent> content_of(const std::string& key, const std::string& gas);
+  std::vector<GivenTarget> targets();
   std::optional<Given<MassDensity>> density(const std::string& key, std::string_view example);
   std::optional<GivenSolute> solute(const std::string& key);
   /// Every key of this section as an amount of the salt it names.
@@ -52,7 +59,8 @@ class Section {
   template <class Q>
   Given<Q> given(const Member& member, Dimension dimension, std::string_view example,
                  bool absolute_by_nature, Sign sign);
-  GivenContent content(const Member& member);
+  GivenContent content(const Member& member, std::string_view example = "3.7 vol");
+  GivenTarget target(const Member& member);
   GivenSolute amount_of(const Member& member, std::span<const Dimension> dimensions,
                         std::string_view example);
   [[nodiscard]] std::string full_key(const std::string& key) const;

@@ -30,15 +30,17 @@ std::string shown(const Figure<Q>& figure, const Unit& in, std::string_view suff
 
 class TextReport {
  public:
-  explicit TextReport(const Report& report) : r_(report), a_(report.answer) {}
+  TextReport(const Report& report, const TextOptions& options)
+      : r_(report), a_(report.answer), options_(options) {}
 
-  std::string write(bool with_trace) {
+  std::string write() {
     heading();
+    asked();
+    answer();
     condition();
-    saturation();
     container();
     opening();
-    if (with_trace) trace();
+    if (options_.with_trace) trace();
     notes();
     sources();
     audit();
@@ -46,9 +48,50 @@ class TextReport {
   }
 
  private:
+  // The units asked for of that dimension, else our own choice.
+  [[nodiscard]] std::vector<const Unit*> units(Dimension dimension, std::string_view own) const {
+    std::vector<const Unit*> asked;
+    for (const auto* u : options_.units) {
+      if (u->dimension == dimension) asked.push_back(u);
+    }
+    if (asked.empty()) asked.push_back(find_unit(own, dimension));
+    return asked;
+  }
+
+  template <class Q>
+  [[nodiscard]] std::string in_units(const Figure<Q>& figure, Dimension dimension,
+                                     std::string_view own, std::string_view suffix = "") const {
+    std::string text;
+    for (const auto* u : units(dimension, own)) {
+      if (!text.empty()) text += " = ";
+      text += shown(figure, *u, suffix);
+    }
+    return text;
+  }
+
+  [[nodiscard]] std::string celsius(const Figure<Temperature>& t) const {
+    return in_units(t, Dimension::temperature, "°C");
+  }
+
+  void pressures(std::string_view label, const Figure<GaugePressure>& gauge,
+                 const Figure<Pressure>& absolute) {
+    line(label, in_units(gauge, Dimension::pressure, "bar", " gauge"),
+         in_units(absolute, Dimension::pressure, "bar", " abs"));
+  }
+
   void line(std::string_view label, const std::string& value, const std::string& more = "") {
-    out_ += "  " + padded(label, kLabel) + padded(value, more.empty() ? 0 : 24) +
-            (more.empty() ? "" : "  " + more) + "\n";
+    constexpr std::size_t page = 80;
+    constexpr std::size_t column = 24;
+    std::string row = "  " + padded(label, kLabel);
+    if (render_detail::columns(label) >= kLabel) row += ' ';
+    const std::string both = row + padded(value, column) + "  " + more;
+    if (more.empty()) {
+      out_ += row + value + "\n";
+    } else if (render_detail::columns(both) <= page) {
+      out_ += both + "\n";
+    } else {
+      out_ += row + value + "\n" + std::string(kLabel + 2, ' ') + more + "\n";
+    }
   }
 
   void section(std::string_view name) { out_ += fmt::format("\n{}\n", name); }
@@ -63,34 +106,80 @@ class TextReport {
                                       r_.liquid, fmt::format("{}", fmt::join(r_.gases, ", "))));
   }
 
+  // What was asked, in the recipe's own words.
+  void asked() {
+    section("Asked");
+    for (const auto& [key, text] : r_.audit.inputs) {
+      const bool given = key.starts_with("contact.") || key.starts_with("target.") ||
+                         key.starts_with("container.") || key.starts_with("opening.") ||
+                         key.starts_with("liquid.") || key.starts_with("gas.");
+      if (given) out_ += wrapped("  " + padded(printable(key), 38), printable(text));
+    }
+  }
+
+  // The answer first; how it came about stands below.
+  void answer() {
+    section("Answer");
+    for (const auto& b : a_.blend) {
+      line(fmt::format("{} in the gas", b.gas), in_units(b.share, Dimension::fraction, "%"));
+    }
+    if (r_.solved_for_temperature) line("Temperature needed", celsius(a_.temperature));
+    if (r_.solved_for_pressure)
+      pressures("Pressure needed", a_.pressure_gauge, a_.pressure_absolute);
+    if (!r_.solved_for_temperature && !r_.solved_for_pressure) {
+      for (const auto& g : a_.gases) gas(g);
+    }
+    if (!r_.solved_for_pressure && a_.blend.empty()) saturation();
+    for (const auto& c : a_.container) {
+      pressures("In the closed package", c.pressure_gauge, c.pressure_absolute);
+      if (c.margin.asked)
+        line("  below its rating by", in_units(c.margin, Dimension::pressure, "bar"));
+    }
+    for (const auto& [gas, limit] : r_.limits) line(fmt::format("Limit for {}", gas), limit);
+    opinions();
+  }
+
   void condition() {
     section("Where liquid and gas meet");
-    const auto& bar = unit("bar", Dimension::pressure);
-    line(r_.solved_for_temperature ? "Temperature needed" : "Temperature",
-         shown(a_.temperature, unit("°C", Dimension::temperature)));
-    line(r_.solved_for_pressure ? "Pressure needed" : "Pressure",
-         shown(a_.pressure_gauge, bar, " gauge"), shown(a_.pressure_absolute, bar, " abs"));
+    line("Temperature", celsius(a_.temperature));
+    pressures("Pressure", a_.pressure_gauge, a_.pressure_absolute);
     line("Ambient pressure", shown(a_.ambient, unit("hPa", Dimension::pressure)));
+    line("Vapour of water", shown(a_.vapour, unit("kPa", Dimension::pressure)));
+    if (a_.ethanol.asked) {
+      line("Vapour of ethanol", shown(a_.ethanol, unit("kPa", Dimension::pressure)));
+    }
+    for (const auto& g : a_.gases) {
+      line(fmt::format("Partial pressure of {}", g.gas),
+           in_units(g.partial_pressure, Dimension::pressure, "bar"));
+    }
     for (const auto& g : a_.gases) gas(g);
-    opinions();
   }
 
   // What the figures in the report are, and what they would be by another reading.
   void opinions() {
     if (r_.relation == "composition" && r_.second_opinion.empty()) return;
-    section(fmt::format("CO2 as read here: {}", basis_text(r_.relation)));
-    for (const auto& o : r_.second_opinion) {
-      const bool pressure = o.unit.ucum == json_unit::kilopascal.ucum;
-      const double si = o.value * o.unit.factor + o.unit.offset;
-      const auto& in = pressure ? unit("bar", Dimension::pressure)
-                       : o.unit.ucum == json_unit::celsius.ucum
-                           ? unit("°C", Dimension::temperature)
-                           : unit("vol", Dimension::gas_volumes);
-      line(basis_text(o.relation),
-           fmt::format("{} {}{}", significant(in_unit(si, in), 4), in.text,
-                       pressure ? " gauge" : ""),
-           fmt::format("{:+.1f} %", o.difference));
+    line("CO2 is read here", basis_text(r_.relation));
+    for (const auto& o : r_.second_opinion) opinion(o);
+  }
+
+  void opinion(const SecondOpinion& o) {
+    const bool pressure = o.unit.ucum == json_unit::kilopascal.ucum;
+    const double si = o.value * o.unit.factor + o.unit.offset;
+    const auto dimension = pressure                                 ? Dimension::pressure
+                           : o.unit.ucum == json_unit::celsius.ucum ? Dimension::temperature
+                           : o.unit.ucum == json_unit::percent.ucum ? Dimension::fraction
+                                                                    : Dimension::gas_volumes;
+    const std::string_view own = pressure                              ? "bar"
+                                 : dimension == Dimension::temperature ? "°C"
+                                 : dimension == Dimension::fraction    ? "%"
+                                                                       : "vol";
+    std::string value;
+    for (const auto* u : units(dimension, own)) {
+      if (!value.empty()) value += " = ";
+      value += fmt::format("{} {}{}", significant(in_unit(si, *u), 4), u->text,
+                           pressure ? " gauge" : "");
     }
+    line("  " + basis_text(o.relation), value, fmt::format("{:+.1f} %", o.difference));
   }
 
   static std::string basis_text(const std::string& relation) {
@@ -111,36 +200,26 @@ class TextReport {
       return;
     }
     line(label, shown(g.volumes, unit("vol", Dimension::gas_volumes)),
-         shown(g.mass_concentration, unit("g/L", Dimension::mass_concentration)));
+         in_units(g.mass_concentration, Dimension::mass_concentration, "g/L"));
   }
 
   void saturation() {
-    if (a_.saturation.empty()) return;
-    section("Saturation: what the wanted content needs");
-    const auto& bar = unit("bar", Dimension::pressure);
     for (std::size_t i = 0; i < a_.saturation.size(); ++i) {
       const auto& s = a_.saturation[i];
       const std::string content = i < r_.targets.size() ? r_.targets[i].second : "";
-      const std::string label = fmt::format("{} {}", s.gas, content);
+      const std::string label = fmt::format("{} of {} needs", content, s.gas);
       if (s.unreachable) line(label, "nothing brings it, see cautions");
-      if (s.pressure_gauge.asked) {
-        line(label, shown(s.pressure_gauge, bar, " gauge"),
-             shown(s.pressure_absolute, bar, " abs"));
-      }
-      if (s.temperature.asked) {
-        line(label, shown(s.temperature, unit("°C", Dimension::temperature)));
-      }
+      if (s.pressure_gauge.asked) pressures(label, s.pressure_gauge, s.pressure_absolute);
+      if (s.temperature.asked && !r_.solved_for_temperature) line(label, celsius(s.temperature));
     }
   }
 
   void container() {
     if (a_.container.empty()) return;
     section("In the closed package, at equilibrium");
-    const auto& bar = unit("bar", Dimension::pressure);
     for (const auto& c : a_.container) {
-      line("Temperature", shown(c.temperature, unit("°C", Dimension::temperature)));
-      line("Pressure", shown(c.pressure_gauge, bar, " gauge"),
-           shown(c.pressure_absolute, bar, " abs"));
+      line("Temperature", celsius(c.temperature));
+      pressures("Pressure", c.pressure_gauge, c.pressure_absolute);
       line("Ullage", shown(c.ullage, unit("%", Dimension::fraction), " of brimful"));
       for (const auto& g : c.gases) gas(g);
     }
@@ -148,7 +227,7 @@ class TextReport {
 
   void opening() {
     if (a_.opening.empty()) return;
-    const auto at = shown(a_.opening_temperature, unit("°C", Dimension::temperature));
+    const auto at = celsius(a_.opening_temperature);
     section(fmt::format("Lost on opening at {}, each on top of the one before", at));
     for (const auto& loss : a_.opening) {
       const bool co2 = loss.gas.empty();
@@ -224,20 +303,19 @@ class TextReport {
     out_ += fmt::format("  {} {}\n", r_.audit.program, r_.audit.version);
     out_ += fmt::format("  recipe    {}\n  constants {}\n", r_.audit.recipe_digest,
                         r_.audit.constants_digest);
-    for (const auto& [key, text] : r_.audit.inputs) {
-      out_ += wrapped("  " + padded(printable(key), 26) + " ", printable(text));
-    }
+    out_ += "  inputs as understood: under Asked\n";
   }
 
   const Report& r_;
   const Answer& a_;
+  const TextOptions& options_;
   std::string out_;
 };
 
 }  // namespace
 
-std::string text_report(const Report& report, bool with_trace) {
-  return TextReport(report).write(with_trace);
+std::string text_report(const Report& report, const TextOptions& options) {
+  return TextReport(report, options).write();
 }
 
 }  // namespace capsigh

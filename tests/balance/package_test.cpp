@@ -47,9 +47,14 @@ struct ReferenceCan {
     for (std::size_t i = 0; i < m.size(); ++i) {
       headspace.push_back(c.air[i] * air + contact_shares(c)[i] * (1 - air));
     }
-    filling = close(m, liquid_of(m),
-                    {celsius(4), m.atmosphere, headspace, contents(m, at, mixture, p),
-                     from_si<Volume>(330e-6), from_si<Volume>(345e-6)});
+    Closing closing;
+    closing.temperature = celsius(4);
+    closing.pressure = m.atmosphere;
+    closing.headspace = headspace;
+    closing.contents = contents(m, at, mixture, p);
+    closing.fill = from_si<Volume>(330e-6);
+    closing.brimful = from_si<Volume>(345e-6);
+    filling = close(m, liquid_of(m), closing);
   }
 
   [[nodiscard]] ClosedState at(double t) const {

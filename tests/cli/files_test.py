@@ -90,11 +90,11 @@ with tempfile.TemporaryDirectory() as scratch:
             done = subprocess.run([capsigh, "report", "-"], input=can, stdout=full, stderr=subprocess.PIPE)
         check("a full disk exits 3", done.returncode == 3 and b"No space" in done.stderr, done)
 
-    for arguments in ([], ["reprot", "x"], ["report"], ["report", "-", "--as", "pdf"], ["report", "-", "--nope"]):
+    for arguments in ([], ["reprot", "x"], ["report"], ["report", "--set", "x"], ["report", "-", "--units", "furlong"], ["report", "-", "--as", "pdf"], ["report", "-", "--nope"]):
         done = run(*arguments, stdin=can)
         check(f"usage {arguments} exits 2", done.returncode == 2 and done.stderr, done)
     check("--help exits 0", run("--help").returncode == 0)
-    check("--version exits 0", run("--version").stdout.strip() == b"0.2.0")
+    check("--version exits 0", run("--version").stdout.strip() == b"0.3.0")
     done = run("report", "-", "--trace", stdin=can)
     check("--trace shows records", b"henry.CO2.weiss1974" in done.stdout, done)
     hot = b'[contact]\ntemperature = "4 degC"\npressure = "12 bar gauge"\n'

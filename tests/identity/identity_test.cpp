@@ -93,8 +93,8 @@ TEST_CASE("k and its slope are continuous where one record takes over, for every
 TEST_CASE("every gas dissolves, in range, with a finite width") {
   std::size_t gases = 0;
   for (const auto& name : gas_names(built_in_library())) {
-    const auto r = answered("[gas]\n" + name +
-                            " = \"100 %\"\n[contact]\ntemperature = \"20 degC\"\n"
+    const auto r = answered("[gas]\n\"" + name +
+                            "\" = \"100 %\"\n[contact]\ntemperature = \"20 degC\"\n"
                             "pressure = \"1 bar abs\"\n");
     const auto& g = r.answer.gases[0].mass_concentration;
     CHECK(si_value(g.value) > 0);
@@ -137,12 +137,13 @@ TEST_CASE("every mole of every gas is found again in the closed package") {
       headspace.push_back(c.air[i] * air + shares[i] * (1 - air));
     }
     const double brimful = 0.2e-3 + any(random) * 2e-3;
-    const Closing closing{celsius(t),
-                          bar(1 + any(random)),
-                          headspace,
-                          contents(m, at, mixture, bar(1 + 3 * any(random))),
-                          from_si<Volume>(brimful * (0.5 + 0.45 * any(random))),
-                          from_si<Volume>(brimful)};
+    Closing closing;
+    closing.temperature = celsius(t);
+    closing.pressure = bar(1 + any(random));
+    closing.headspace = headspace;
+    closing.contents = contents(m, at, mixture, bar(1 + 3 * any(random)));
+    closing.fill = from_si<Volume>(brimful * (0.5 + 0.45 * any(random)));
+    closing.brimful = from_si<Volume>(brimful);
     const auto filling = close(m, liquid_of(m), closing);
     const auto result = equilibrium(m, liquid_of(m), filling, celsius(t + 30 * any(random)));
     REQUIRE(std::holds_alternative<ClosedState>(result));

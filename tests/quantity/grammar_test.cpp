@@ -69,6 +69,9 @@ TEST_CASE("grammar names what is wrong") {
   CHECK(fault("2.3 barg abs", kPressure) == "reference-contradicts");
   CHECK(fault("30 psia gauge", kPressure) == "reference-contradicts");
   CHECK(fault("4 °", kTemperature) == "degree-of-what");
+  CHECK(fault("4 degC Â± 0.3 K", kTemperature) == "plus-minus-broken");
+  CHECK(fault("4 degC +- 0.3 K", kTemperature) == "plus-minus-broken");
+  CHECK(fault("4 degC ? 0.3 K", kTemperature) == "plus-minus-broken");
   CHECK(fault("2.3 baar gauge", kPressure) == "unit-unknown");
   CHECK(fault("2.3 degC", kPressure) == "unit-wrong-kind");
   CHECK(fault("4 degC gauge", kTemperature) == "reference-misplaced");

@@ -23,6 +23,7 @@ struct ContentCase {
   std::size_t gas = 0;
   ContentMeasure measure = ContentMeasure::volumes;
   Uncertain<Fraction> amount;
+  bool is_limit = false;  ///< of a target: a maximum or minimum, which nothing is solved for
 };
 
 /// One line of the headspace's composition: a gas or a mixture, its share, and how that splits over
@@ -31,6 +32,7 @@ struct ShareLine {
   std::string name;
   Uncertain<Fraction> share;
   bool rest = false;
+  bool find = false;  ///< its share is solved for
   Shares parts;
 };
 
@@ -44,13 +46,24 @@ struct ContactCase {
   std::optional<Uncertain<Pressure>> absolute_pressure;
   std::optional<ContentCase> content;
   PerGas<ShareLine> gas;
+  std::optional<Uncertain<Length>> depth;       ///< liquid above the point of contact
+  std::optional<Uncertain<Fraction>> approach;  ///< of saturation actually reached
 };
 
 struct ContainerCase {
   Uncertain<Volume> brimful;
-  Uncertain<Volume> fill;
-  Uncertain<Fraction> closing_air;
-  GaugePressure closing_pressure;
+  std::optional<Uncertain<Volume>> fill;  ///< carbonated liquid at closing, or ...
+  std::optional<Uncertain<Mass>> fill_mass;
+  std::optional<Uncertain<Temperature>> closing_temperature;  ///< else the contact's
+  std::optional<Uncertain<Pressure>> closing_absolute;        ///< else by the gauge:
+  Uncertain<GaugePressure> closing_gauge;
+  Uncertain<Fraction> closing_air;                      ///< of the dry headspace, or ...
+  std::optional<Uncertain<Volume>> closing_air_volume;  ///< at closing temperature and ambient
+  std::optional<ContentCase> closing_oxygen;            ///< dissolved at closing
+  PerGas<ContentCase> filling_loss;
+  std::optional<Uncertain<Mass>> nitrogen_dose;
+  std::optional<GaugePressure> rated_gauge;
+  std::optional<Pressure> rated_absolute;
 };
 
 struct OpeningCase {
@@ -68,11 +81,14 @@ struct Case {
   PerGas<std::uint8_t> in_container;  ///< whether it belongs to the closed package
   Shares air;                         ///< of the room and of air in a headspace
   bool ideal_volumes = false;
+  bool target_at_package = false;  ///< targets hold after the closed package has settled
+  Acceleration gravity{};
   bool content_from_target = false;  ///< the contact's content is a target's
 };
 
-/// The dry composition at the contact at the current z, adding up to one.
-Shares contact_shares(const Case& c);
+/// The dry composition at the contact at the current z, adding up to one. `found` is the share of
+/// the line that is solved for.
+Shares contact_shares(const Case& c, Fraction found = {});
 
 /// Every doubt of the case that is not zero, each with the z that moves it: inputs by their keys,
 /// records by theirs. Pointers stay valid as long as the case does.

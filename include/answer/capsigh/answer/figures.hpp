@@ -74,11 +74,18 @@ struct SaturationFigures {
   std::optional<RefusalCode> unreachable;  ///< why nothing holds the wanted content
 };
 
+/// The share of a gas that was to be found.
+struct BlendFigures {
+  std::string_view gas;
+  Figure<Fraction> share;
+};
+
 struct ContainerFigures {
   Figure<Temperature> temperature;
   Figure<Pressure> pressure_absolute;
   Figure<GaugePressure> pressure_gauge;
   Figure<Fraction> ullage;
+  Figure<Pressure> margin;  ///< rating less gauge pressure
   Figure<Pressure> vapour;
   Figure<Pressure> ethanol;
   PerGas<GasFigures> gases;
@@ -98,6 +105,7 @@ struct Answer {
   Figure<Pressure> ambient;
   Figure<Pressure> vapour;   ///< of water
   Figure<Pressure> ethanol;  ///< vapour of ethanol, where the liquid has some
+  PerGas<BlendFigures> blend;
   PerGas<GasFigures> gases;
   PerGas<SaturationFigures> saturation;
   boost::container::static_vector<ContainerFigures, 8> container;
@@ -146,6 +154,7 @@ void each_figure(A& a, F&& f) {
   f(FigurePath("condition", "ambient"), a.ambient, kilopascal);
   f(FigurePath("headspace", "partial_pressure", "water"), a.vapour, kilopascal);
   f(FigurePath("headspace", "partial_pressure", "ethanol"), a.ethanol, kilopascal);
+  for (auto& b : a.blend) f(FigurePath("blend", b.gas), b.share, percent);
   detail::each_gas_figure(a.gases, FigurePath(), f);
   for (auto& s : a.saturation) {
     const FigurePath at("saturation", s.gas);
@@ -160,6 +169,7 @@ void each_figure(A& a, F&& f) {
     f(at.then("pressure_absolute"), c.pressure_absolute, kilopascal);
     f(at.then("pressure_gauge"), c.pressure_gauge, kilopascal);
     f(at.then("ullage"), c.ullage, percent);
+    f(at.then("margin"), c.margin, kilopascal);
     f(at.then("headspace").then("partial_pressure").then("water"), c.vapour, kilopascal);
     f(at.then("headspace").then("partial_pressure").then("ethanol"), c.ethanol, kilopascal);
     detail::each_gas_figure(c.gases, at, f);

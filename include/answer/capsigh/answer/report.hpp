@@ -39,6 +39,7 @@ struct Report {
   bool solved_for_pressure = false;
   bool solved_for_temperature = false;
   std::vector<std::pair<std::string, std::string>> targets;  ///< gas and content as asked
+  std::vector<std::pair<std::string, std::string>> limits;   ///< gas and its max or min
   std::vector<SecondOpinion> second_opinion;
   std::vector<BudgetLine> budget;
   std::vector<std::string> doubt_not_stated;
@@ -47,6 +48,7 @@ struct Report {
   std::vector<CitedSource> sources;
   Trace trace;
   Audit audit;
+  bool limits_met = true;  ///< false where something is out of tolerance or over a rating
 };
 
 /// Answers a recipe. `recipe_text` is what the digest identifies. Without a value the findings say

@@ -24,9 +24,15 @@ struct Closing {
   Pressure pressure{};  ///< absolute, of the headspace
   Shares headspace;     ///< dry composition over the liquid
   Contents contents;    ///< of the liquid
-  Volume fill{};        ///< carbonated liquid at the closing temperature
+  Volume fill{};        ///< carbonated liquid at the closing temperature, or ...
+  Mass fill_mass{};     ///< carbonated liquid by mass, where above zero
   Volume brimful{};
+  Amount nitrogen_dose{};  ///< liquid nitrogen present at closing, all of it counted
+  std::size_t nitrogen = kMaxGases;
 };
+
+/// Volume of carbonated liquid at closing, however it was given.
+Volume liquid_volume(const Medium& medium, const AtTemperature& at, const Closing& closing);
 
 Filling close(const Medium& medium, const Liquid& liquid, const Closing& closing);
 

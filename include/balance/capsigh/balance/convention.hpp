@@ -29,6 +29,7 @@ struct Convention {
   const Record* record = nullptr;  ///< none: by composition
   Interval temperature;            ///< K, where the relation holds
   Interval pressure;               ///< Pa absolute
+  Pressure least_partial{};        ///< CO2 below which the relation is not read
 
   [[nodiscard]] bool in_force() const { return record != nullptr; }
 };

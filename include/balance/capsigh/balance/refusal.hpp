@@ -14,6 +14,8 @@ enum class RefusalCode {
   no_temperature_holds,      ///< no temperature inside the search dissolves that much
   container_without_space,   ///< the container is full of liquid
   nothing_of_that_gas,       ///< a content of a gas the headspace does not hold
+  no_blend_holds,            ///< not even the pure gas holds that content at that pressure
+  air_exceeds_headspace,     ///< more air than the headspace has room for
   too_little_everywhere,  ///< up to the end of the search, more than that content stays dissolved
   no_number,              ///< a figure came out as no finite number
 };

@@ -48,6 +48,13 @@ struct DocumentLimits {
 Outcome<Node> parse_document(std::string_view text, const std::string& file,
                              const DocumentLimits& limits = {});
 
+/// Lays `top` over `base`: tables are joined key by key, everything else of `top` replaces.
+void overlay(Node& base, const Node& top);
+
+/// Reads one "a.b.c=value" of a command line as a document. The value is text unless it reads as a
+/// TOML number, boolean, array or table. Places point into the argument.
+Outcome<Node> parse_assignment(const std::string& argument);
+
 /// Whether the bytes are UTF-8 throughout (RFC 3629).
 bool is_utf8(std::string_view text);
 

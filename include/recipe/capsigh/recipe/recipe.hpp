@@ -59,7 +59,15 @@ struct GivenContent {
 struct GivenShare {
   LocatedText name;
   bool rest = false;
+  bool find = false;  ///< "find": solved for, so that the target is held
   Given<Fraction> share;
+};
+
+/// What a specification says of one gas.
+struct GivenTarget {
+  GivenContent content;
+  bool is_maximum = false;  ///< { max = "..." }
+  bool is_minimum = false;  ///< { min = "..." }
 };
 
 /// How a solute's amount is expressed; the number behind it is in SI units of that measure.
@@ -96,13 +104,23 @@ struct ContactSection {
   std::optional<Place> dissolved_place;
   std::optional<Given<Length>> altitude;
   std::optional<Given<Pressure>> ambient;
+  std::optional<Given<Length>> depth;
+  std::optional<Given<Fraction>> approach;
 };
 
 struct ContainerSection {
   Place place;
   std::optional<Given<Volume>> brimful;
   std::optional<Given<Volume>> fill;
+  std::optional<Given<Mass>> fill_mass;
+  std::optional<GivenPressure> rated;
+  std::optional<Given<Temperature>> closing_temperature;
+  std::optional<GivenPressure> closing_pressure;
   std::optional<Given<Fraction>> closing_air;
+  std::optional<Given<Volume>> closing_air_volume;
+  std::optional<GivenContent> closing_oxygen;  ///< dissolved in the liquid
+  std::vector<GivenContent> filling_loss;
+  std::optional<Given<Mass>> nitrogen_dose;
 };
 
 struct OpeningSection {
@@ -119,7 +137,8 @@ struct Recipe {
   std::vector<GivenShare> gas;
   std::optional<Place> gas_place;
   std::optional<ContactSection> contact;
-  std::vector<GivenContent> target;
+  std::vector<GivenTarget> target;
+  std::optional<LocatedText> target_at;  ///< "contact" or "package"
   std::optional<ContainerSection> container;
   std::optional<OpeningSection> opening;
   std::vector<std::pair<std::string, std::string>> inputs;  ///< as understood: key and text

@@ -6,11 +6,20 @@
 
 #include "capsigh/answer/report.hpp"
 #include "capsigh/constants/library.hpp"
+#include "capsigh/quantity/grammar.hpp"
 
 namespace capsigh {
 
+struct TextOptions {
+  bool with_trace = false;
+  std::vector<const Unit*> units;  ///< of --units, in the order asked; others are our own choice
+};
+
 /// A report for people: 80 columns, no colour.
-std::string text_report(const Report& report, bool with_trace);
+std::string text_report(const Report& report, const TextOptions& options = {});
+
+/// One row a report, RFC 4180: file, title, then every figure and its u, the unit in the header.
+std::string csv_reports(const std::vector<std::pair<std::string, Report>>& reports);
 
 /// Reports by the JSON contract: one an object, several an array.
 std::string json_reports(const std::vector<Report>& reports, bool with_trace);
