@@ -10,9 +10,10 @@ SEES = {
     "models": {"quantity", "constants"},
     "balance": {"quantity", "constants", "models"},
     "recipe": {"quantity", "document"},
-    "answer": {"quantity", "document", "constants", "models", "balance", "recipe"},
-    "render": {"quantity", "document", "constants", "models", "balance", "recipe", "answer"},
-    "cli": {"quantity", "document", "constants", "models", "balance", "recipe", "answer", "render"},
+    "quality": {"quantity"},
+    "answer": {"quantity", "document", "constants", "models", "balance", "recipe", "quality"},
+    "render": {"quantity", "document", "constants", "models", "balance", "recipe", "quality", "answer"},
+    "cli": {"quantity", "document", "constants", "models", "balance", "recipe", "quality", "answer", "render"},
 }
 # Headers are stricter: constants reads documents, but none of its headers may.
 HEADER_FORBIDS = {"constants": {"document"}, "models": {"document"}, "balance": {"document"}}

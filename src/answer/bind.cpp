@@ -80,6 +80,10 @@ class Binder : answer_detail::RecipeCheck {
     describe_liquid();
     question_bicarbonate();
     for (const auto& gas : gases_) {
+      if (const Record* hazard = library_.find("hazard." + gas)) {
+        binding_.notes.push_back(
+            note(Severity::caution, "hazardous-gas", std::string(hazard->definition)));
+      }
       if (const Record* reaction = library_.find("reactive." + gas)) {
         binding_.notes.push_back(
             note(Severity::caution, "reactive-gas", std::string(reaction->definition)));
@@ -234,7 +238,13 @@ class Binder : answer_detail::RecipeCheck {
     for (const auto& target : recipe_.target) {
       if (problem().targets.size() < kMaxGases) {
         problem().targets.push_back(bind_content(target.content, ""));
-        problem().targets.back().is_limit = target.is_maximum || target.is_minimum;
+        auto& bound = problem().targets.back();
+        bound.is_limit = target.is_maximum || target.is_minimum;
+        const double value = bound.amount.best.value();
+        const auto& tolerance = target.content.amount.plus_minus;
+        if (target.is_maximum) bound.accepted.high = value;
+        if (target.is_minimum) bound.accepted.low = value;
+        if (tolerance) bound.accepted = {value - tolerance->value(), value + tolerance->value()};
       }
     }
   }

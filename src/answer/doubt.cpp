@@ -79,11 +79,31 @@ std::string quantity_text(double si, std::string_view unit, Dimension dimension)
 std::string conditions_text(const Conditions& c, const ValidityBox& box) {
   std::string text;
   if (c.temperature && box.temperature.bounded()) {
-    text += quantity_text(c.temperature->kelvin(), "degC", Dimension::temperature);
+    text += quantity_text(c.temperature->kelvin(), "°C", Dimension::temperature);
   }
   if (c.pressure && box.pressure.bounded()) {
     if (!text.empty()) text += " and ";
     text += quantity_text(c.pressure->value(), "bar", Dimension::pressure) + " abs";
+  }
+  return text;
+}
+
+// A range in one unit a kind, for a message.
+std::string range_in_words(const Record& record) {
+  const auto interval = [](const Interval& i, std::string_view unit, Dimension dimension) {
+    const auto& in = *find_unit(unit, dimension);
+    return fmt::format("{} to {}", significant(in_unit(i.low, in), 4),
+                       quantity_text(i.high, unit, dimension));
+  };
+  std::string text;
+  for (const auto& box : record.range) {
+    if (!text.empty()) text += ", or ";
+    if (box.temperature.bounded()) {
+      text += interval(box.temperature, "°C", Dimension::temperature);
+    }
+    if (!box.pressure.bounded()) continue;
+    if (box.temperature.bounded()) text += " and ";
+    text += interval(box.pressure, "bar", Dimension::pressure) + " abs";
   }
   return text;
 }
@@ -156,11 +176,16 @@ Findings judge_ranges(Case& c, const Trace& trace, double widening_per_width) {
     Finding f;
     f.severity = Severity::caution;
     f.code = "out-of-range";
-    f.message = fmt::format("{} is used at {}, outside its range of {}; {}", record->key,
-                            conditions_text(entry.conditions, box), record->range_text,
-                            definition ? std::string("continued from the edge by composition")
-                                       : fmt::format("extrapolated, its uncertainty taken {} times",
-                                                     significant(factor, 3)));
+    const std::string at = conditions_text(entry.conditions, box);
+    f.message =
+        definition ? fmt::format(
+                         "{} is read at {} (CO2 and vapour), outside its range of {}; continued "
+                         "from the edge by composition",
+                         record->key, at, range_in_words(*record))
+                   : fmt::format(
+                         "{} is used at {}, outside its range of {}; extrapolated, its uncertainty "
+                         "taken {} times",
+                         record->key, at, range_in_words(*record), significant(factor, 3));
     cautions.push_back(std::move(f));
   }
   std::sort(cautions.begin(), cautions.end(),

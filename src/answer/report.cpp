@@ -43,7 +43,10 @@ std::vector<CitedSource> cited_sources(const Trace& trace, const Binding& bindin
 // Where in the recipe a refusal is best shown: at the value that asks for the impossible.
 Place place_of(const Recipe& recipe, const Refusal& refusal) {
   const auto& contact = recipe.contact;
-  if (refusal.asked_by == AskedBy::closing && recipe.container) return recipe.container->place;
+  const bool of_container = refusal.code == RefusalCode::container_without_space ||
+                            refusal.code == RefusalCode::air_exceeds_headspace ||
+                            refusal.asked_by == AskedBy::closing;
+  if (of_container && recipe.container) return recipe.container->place;
   if (refusal.asked_by == AskedBy::opening && recipe.opening) {
     const auto& temperature = recipe.opening->temperature;
     return temperature ? temperature->source.place : recipe.opening->place;
@@ -74,6 +77,66 @@ void caution_unreachable(Report& report) {
   }
 }
 
+Finding caution(std::string code, std::string message) {
+  Finding f;
+  f.severity = Severity::caution;
+  f.code = std::move(code);
+  f.message = std::move(message);
+  return f;
+}
+
+// Henry's law is for dilute solutions, the solutes' constants for drinks.
+void caution_concentration(const Case& c, const Library& library, Report& report) {
+  const auto share = [&](std::string_view key) {
+    return library.at(key).values[0].value * library.at(key).factor;
+  };
+  for (const auto& g : report.answer.gases) {
+    if (g.mole_fraction.value.value() <= share("assumed.dilute")) continue;
+    report.cautions.push_back(
+        caution("not-dilute", fmt::format("{} reaches a mole fraction of {} in the liquid: Henry's "
+                                          "law is for dilute solutions, the figure is a hint",
+                                          g.gas, significant(g.mole_fraction.value.value(), 2))));
+  }
+  const auto liquid = compose(c.medium.liquid, c.medium.content_temperature);
+  const double sugar = (liquid.sugar / liquid.density).value();
+  if (sugar > share("assumed.strongest_sugar")) {
+    report.cautions.push_back(
+        caution("concentrated",
+                fmt::format("{} % of sugar by mass is beyond the measurements, which end at "
+                            "{} %",
+                            significant(100 * sugar, 3),
+                            library.at("assumed.strongest_sugar").values[0].digits)));
+  }
+  if (report.answer.breaks_out_above) {
+    report.cautions.push_back(caution(
+        "above-headspace",
+        "the liquid takes up more in the depth than the headspace holds: once the gas is shut off, "
+        "the difference comes out at the surface"));
+  }
+}
+
+// Below its freezing point (Raoult) a liquid is answered as if supercooled.
+void caution_freezing(const Case& c, const Library& library, Report& report) {
+  const auto liquid = compose(c.medium.liquid, c.medium.content_temperature);
+  const double constant = library.at("freezing.water").values[0].value;
+  const double water = liquid.x_water.value() * liquid.particles.value() *
+                       c.medium.liquid.water_molar_mass.law.value.value();
+  const double dissolved = (1 - liquid.x_water.value()) * liquid.particles.value() / water;
+  const Temperature freezing =
+      c.medium.zero_celsius - from_si<TemperatureDifference>(constant * dissolved);
+  const auto celsius = [](Temperature t) {
+    return significant(in_unit(t.kelvin(), *find_unit("°C", Dimension::temperature)), 3);
+  };
+  const auto check = [&](const Figure<Temperature>& t) {
+    if (!t.asked || t.value >= freezing) return false;
+    report.cautions.push_back(caution(
+        "frozen", fmt::format("at {} °C the liquid may be frozen: it freezes at about {} °C",
+                              celsius(t.value), celsius(freezing))));
+    return true;
+  };
+  if (!check(report.answer.temperature)) check(report.answer.opening_temperature);
+}
+
 // Cautions about ranges, as --strict takes them.
 Findings ranges_as_errors(const Findings& cautions, const std::string& file) {
   Findings errors;
@@ -96,18 +159,61 @@ Finding package_caution() {
   return f;
 }
 
-// A package above its rating comes first on the page.
+// A package above its rating comes first on the page, at whatever temperature the recipe names.
 void judge_rating(Report& report) {
-  for (const auto& c : report.answer.container) {
-    if (!c.margin.asked || c.margin.value.value() >= 0) continue;
+  const auto above = [&](const Figure<Pressure>& margin, const Figure<Temperature>& at) {
+    if (!margin.asked || margin.value.value() >= 0) return;
     report.limits_met = false;
     Finding f;
     f.severity = Severity::caution;
     f.code = "over-rating";
     f.message = fmt::format(
-        "the package stands above its rating by {} bar",
-        significant(in_unit(-c.margin.value.value(), *find_unit("bar", Dimension::pressure)), 3));
+        "DANGER: at {} °C the package stands above its rating by {} bar",
+        significant(in_unit(at.value.kelvin(), *find_unit("°C", Dimension::temperature)), 3),
+        significant(in_unit(-margin.value.value(), *find_unit("bar", Dimension::pressure)), 3));
     report.cautions.insert(report.cautions.begin(), std::move(f));
+  };
+  for (const auto& c : report.answer.container) above(c.margin, c.temperature);
+  above(report.answer.opening_margin, report.answer.opening_temperature);
+}
+
+// The figure of a gas in the measure of its target: value and u in SI units.
+std::pair<double, double> in_measure(const GasFigures& g, ContentMeasure measure,
+                                     double molar_mass) {
+  const auto both = [](const auto& figure) {
+    return std::pair{si_value(figure.value), si_value(figure.u)};
+  };
+  switch (measure) {
+    case ContentMeasure::volumes: return both(g.volumes);
+    case ContentMeasure::mass_concentration: return both(g.mass_concentration);
+    case ContentMeasure::amount_concentration: return both(g.amount_concentration);
+    case ContentMeasure::mass_fraction: return both(g.mass_fraction);
+    case ContentMeasure::molality: break;
+  }
+  const auto [value, u] = both(g.mass_fraction);
+  return {value / molar_mass, u / molar_mass};
+}
+
+// Targets and limits against the content, where the contact is known without them.
+void judge_targets(const Binding& binding, const Library& library, Report& report) {
+  const Case& c = binding.problem;
+  if (c.content_from_target || !report.answer.blend.empty() || c.target_at_package) return;
+  const double risk =
+      library.at("assumed.risk").values[0].value * library.at("assumed.risk").factor;
+  std::size_t wish = 0;
+  std::size_t limit = 0;
+  for (const auto& target : c.targets) {
+    const auto& words = target.is_limit ? report.limits[limit++] : report.targets[wish++];
+    if (!target.accepted.bounded()) continue;  // a wish without a tolerance judges nothing
+    for (const auto& g : report.answer.gases) {
+      if (g.gas != c.medium.gases[target.gas].name) continue;
+      const auto [y, u] =
+          in_measure(g, target.measure, c.medium.gases[target.gas].molar_mass.law.value.value());
+      const auto judgement = judge(y, u, target.accepted, risk);
+      report.judged.push_back(
+          {words.first, words.second, judgement.verdict, judgement.probability, u > 0});
+      report.limits_met = report.limits_met && judgement.verdict == Verdict::inside;
+    }
   }
 }
 
@@ -161,6 +267,8 @@ Outcome<Report> report(const Outcome<Recipe>& recipe, std::string_view recipe_te
     if (!refused_ranges.empty()) return {{}, refused_ranges};
   }
   caution_unreachable(report);
+  caution_concentration(problem, library, report);
+  caution_freezing(problem, library, report);
   if (problem.container) report.cautions.push_back(package_caution());
   judge_rating(report);
   report.second_opinion = second_opinions(*binding, report.answer, library);
@@ -170,6 +278,7 @@ Outcome<Report> report(const Outcome<Recipe>& recipe, std::string_view recipe_te
     return {{}, propagation.findings};
   }
   report.budget = std::move(propagation.budget);
+  judge_targets(*binding, library, report);
   report.sources = cited_sources(report.trace, *binding, library);
   report.audit.version = version();
   report.audit.recipe_digest = sha1_digest(recipe_text);

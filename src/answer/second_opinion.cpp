@@ -45,7 +45,7 @@ std::vector<SecondOpinion> second_opinions(const Binding& binding, const Answer&
   std::vector<SecondOpinion> opinions;
   for (const Record* relation : others) {
     Case other = binding.problem;
-    other.container.reset();
+    if (!other.target_at_package) other.container.reset();
     other.opening.reset();
     other.medium.convention = answer_detail::convention_of(library, relation, other.medium);
     const auto solved = solve(other);

@@ -200,6 +200,11 @@ std::optional<Refusal> Solver::solve_contact() {
     return Refusal{RefusalCode::boils, contact_.pressure.value(), contact_.at.vapour.value()};
   }
   contact_.contents = taken_up(contact_.at, contact_.mixture, contact_.pressure);
+  // What a sparger in the depth dissolves can be more than the headspace holds.
+  const auto held = contents(m_, contact_.at, contact_.mixture, contact_.pressure);
+  for (std::size_t i = 0; i < held.size(); ++i) {
+    if (c_.contact.depth && contact_.contents[i] > held[i]) answer_.breaks_out_above = true;
+  }
   answer_contact();
   return std::nullopt;
 }
@@ -361,17 +366,21 @@ std::optional<Refusal> Solver::answer_container() {
   return std::nullopt;
 }
 
+// Rating less the package's pressure; without a rating, nothing to be asked.
+Pressure Solver::margin(const ClosedState& state) const {
+  if (c_.container->rated_gauge) {
+    return *c_.container->rated_gauge - gauge(state.pressure, contact_.ambient);
+  }
+  return c_.container->rated_absolute ? *c_.container->rated_absolute - state.pressure : Pressure{};
+}
+
 ContainerFigures Solver::container_figures(const ClosedState& state) const {
   ContainerFigures f;
   f.temperature = state.at.t;
   f.pressure_absolute = state.pressure;
   f.pressure_gauge = gauge(state.pressure, contact_.ambient);
   f.ullage = state.headspace / filling_.brimful;
-  if (c_.container->rated_gauge) {
-    f.margin = *c_.container->rated_gauge - f.pressure_gauge.value;
-  } else if (c_.container->rated_absolute) {
-    f.margin = *c_.container->rated_absolute - state.pressure;
-  }
+  if (c_.container->rated_gauge || c_.container->rated_absolute) f.margin = margin(state);
   f.vapour = state.at.vapours.water;
   if (liquid_.x_ethanol.value() > 0) f.ethanol = state.at.vapours.ethanol;
   for (std::size_t i = 0; i < m_.size(); ++i) {
@@ -393,6 +402,10 @@ std::optional<Refusal> Solver::answer_opening() {
       state = std::get<ClosedState>(found);
     }
     if (trace_ != nullptr) opened_state_ = state;
+    answer_.opening_pressure = gauge(state.pressure, contact_.ambient);
+    answer_.opening_margin = margin(state);
+    if (!c_.container->rated_gauge && !c_.container->rated_absolute)
+      answer_.opening_margin.asked = false;
     opened = open_package(m_, filling_, state, contact_.ambient, c_.air);
   } else {
     const auto t = wanted ? wanted->now() : contact_.at.t;

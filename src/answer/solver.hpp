@@ -66,6 +66,7 @@ class Solver {
   Contents at_closing(Contents reached) const;
   OrRefusal<Closing> closing_with(const Contents& reached) const;
   Maybe answer_container();
+  Pressure margin(const ClosedState& state) const;
   ContainerFigures container_figures(const ClosedState& state) const;
   void trace_container(const ClosedState& state);
   Molality trace_state(const ClosedState& state);

@@ -50,7 +50,7 @@ HenryAt henry_at(Trace* trace, const Medium& m, const HenryChain& chain, const W
   const double kelvin = at.t.kelvin();
   std::size_t i = 0;
   while (i < chain.overlaps.size() && kelvin >= chain.overlaps[i].high) ++i;
-  const HenryAt first = segment_at(trace, m, chain, i, at, b);
+  HenryAt first = segment_at(trace, m, chain, i, at, b);
   if (i == chain.overlaps.size() || kelvin <= chain.overlaps[i].low) return first;
   const HenryAt second = segment_at(trace, m, chain, i + 1, at, b);
   const double w = smoothstep(kelvin, chain.overlaps[i].low, chain.overlaps[i].high);

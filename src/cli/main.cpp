@@ -42,13 +42,19 @@ Outcome<std::vector<const Unit*>> display_units(const std::vector<std::string>& 
   std::vector<const Unit*> units;
   for (const auto& name : names) {
     const auto all = unit_table();
-    const auto it =
-        std::find_if(all.begin(), all.end(), [&](const Unit& u) { return u.text == name; });
+    const auto shown = [&](const Unit& u) {
+      return u.text == name && u.reference == Reference::none &&
+             (u.dimension == Dimension::pressure || u.dimension == Dimension::temperature ||
+              u.dimension == Dimension::mass_concentration);
+    };
+    const auto it = std::find_if(all.begin(), all.end(), shown);
     if (it == all.end()) {
       Finding f;
       f.code = "unit-unknown";
-      f.message = "--units: '" + name + "' is no unit known here";
-      f.expected = "units such as psi,degF,g/L";
+      f.message = "--units: nothing is displayed in '" + name + "'";
+      f.expected =
+          "units of pressure (without gauge or abs), temperature or mass concentration: "
+          "psi,degF,mg/L";
       return {{}, {f}};
     }
     units.push_back(&*it);
@@ -165,13 +171,12 @@ int run(int argc, char** argv) {
   auto* report_command = app.add_subcommand("report", "answer all that a recipe asks");
   report_command->add_option("RECIPE", arguments.recipes, "recipe files; - is standard input");
   report_command->add_option("--with", arguments.with, "lay this shared file under the recipe")
-      ->take_all()
-      ->expected(1);
+      ->allow_extra_args(false);
   report_command->add_option("--set", arguments.sets, "set one key: contact.temperature=\"4 degC\"")
-      ->take_all()
-      ->expected(1);
-  report_command->add_option("--units", arguments.units, "units to display: psi,degF,g/L")
-      ->delimiter(',');
+      ->allow_extra_args(false);
+  report_command->add_option("--units", arguments.units, "units to display: psi,degF,mg/L")
+      ->delimiter(',')
+      ->allow_extra_args(false);
   report_command->add_option("--as", arguments.as, "form of the output")
       ->check(CLI::IsMember({"text", "json", "csv"}));
   report_command->add_option("--out", arguments.out, "write to this file");

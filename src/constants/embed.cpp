@@ -98,7 +98,7 @@ void write(const RecordStore& store, const char* path) {
 
 int main(int argc, char** argv) {
   if (argc != 3) {
-    std::fputs("usage: capsigh_embed DIRECTORY OUTPUT.cpp\n", stderr);
+    fmt::print(stderr, "usage: capsigh_embed DIRECTORY OUTPUT.cpp\n");
     return 2;
   }
   try {

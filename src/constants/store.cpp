@@ -35,6 +35,7 @@ constexpr auto kConstantUnits = std::to_array<ConstantUnit>({
     {"m", 1},
     {"m/s2", 1},
     {"K/m", 1},
+    {"K kg/mol", 1},
     {"J/(mol K)", 1},
     {"g/mol", 1e-3},
     {"cm3/mol", 1e-6},

@@ -251,7 +251,8 @@ Outcome<Node> parse_assignment(const std::string& argument) {
     return node;
   };
   const bool table = value.find('{') != std::string::npos;
-  if (!typed || !(table || keeps_its_type(*leaf(*typed)))) {
+  const bool quoted_text = !value.empty() && (value.front() == '"' || value.front() == '\'');
+  if (!typed || !(table || quoted_text || keeps_its_type(*leaf(*typed)))) {
     typed = parse_document(key + " = " + quoted(value) + "\n", "--set");
   }
   if (!typed) {

@@ -103,6 +103,7 @@ constexpr auto kUnits = std::to_array<Unit>({
     {"ppm", mass_fraction, 1e-6},
     {"ppb", mass_fraction, 1e-9},
     {"Brix", mass_fraction, 1e-2},
+    {"°Brix", mass_fraction, 1e-2},
     {"°Bx", mass_fraction, 1e-2},
     {"Plato", mass_fraction, 1e-2},
     {"°P", mass_fraction, 1e-2},
@@ -127,6 +128,33 @@ constexpr auto kUnits = std::to_array<Unit>({
     {"1/min", rate, 1 / kMinute},
     {"1/h", rate, 1 / kHour},
     {"1/d", rate, 1 / kDay},
+});
+
+// What people write for a unit that is called otherwise here.
+struct Alias {
+  std::string_view written;
+  std::string_view meant;
+};
+constexpr auto kAliases = std::to_array<Alias>({
+    {"C", "degC"},
+    {"F", "degF"},
+    {"celsius", "degC"},
+    {"gal", "US gal' or 'imp gal"},
+    {"fl oz", "US fl oz' or 'imp fl oz"},
+    {"bbl", "US bbl' or 'UK bbl"},
+    {"l", "L"},
+    {"ml", "mL"},
+    {"hl", "hL"},
+    {"cl", "cL"},
+    {"g/l", "g/L"},
+    {"mg/l", "mg/L"},
+    {"volumes", "vol"},
+    {"v/v", "vol"},
+    {"feet", "ft"},
+    {"inch", "in"},
+    {"lbs", "lb"},
+    {"Bar", "bar"},
+    {"PSI", "psi"},
 });
 
 constexpr bool is_space(char c) { return c == ' ' || c == '\t'; }
@@ -223,6 +251,17 @@ std::variant<double, GrammarFault> read_number(Scanner& in, const Wanted& wanted
   if (const double divisor = read_divisor(in); divisor > 0) value /= divisor;
   const bool comma =
       in.at + 1 < in.text.size() && in.text[in.at] == ',' && is_digit(in.text[in.at + 1]);
+  std::size_t behind = 0;
+  while (comma && in.at + 1 + behind < in.text.size() && is_digit(in.text[in.at + 1 + behind])) {
+    ++behind;
+  }
+  if (comma && behind == 3 && std::abs(value) >= 1) {
+    return fault(start, length + 1 + behind, "comma-in-number",
+                 fmt::format("a comma is neither a decimal sign nor a separator of thousands here: "
+                             "write {0}{1} or {0}.{1}",
+                             in.text.substr(start, length), in.text.substr(in.at + 1, behind)),
+                 wanted);
+  }
   if (comma) {
     return fault(start, length + 2, "decimal-comma",
                  "the decimal sign is a point here, not a comma", wanted);
@@ -293,6 +332,13 @@ GrammarFault unit_fault(const std::string& unit_text, std::size_t start, std::si
                              dimension_name(elsewhere->dimension), join_names(wanted.dimensions)),
                  wanted);
   }
+  for (const auto& alias : kAliases) {
+    if (alias.written != unit_text) continue;
+    return fault(
+        start, length, "unit-unknown",
+        fmt::format("'{}' is no unit known here; did you mean '{}'?", unit_text, alias.meant),
+        wanted);
+  }
   std::vector<std::string> names;
   for (const auto& unit : kUnits) {
     if (unit_among(unit.text, wanted.dimensions) != nullptr) names.emplace_back(unit.text);
@@ -334,6 +380,10 @@ std::variant<double, GrammarFault> read_plus_minus(Scanner& in, Dimension of,
   split_reference(text);
   const Dimension difference = of == temperature ? temperature_difference : of;
   const Unit* unit = find_unit(text, difference);
+  // "10.5 % ± 0.1 Brix": two spellings of the same per cent.
+  if (unit == nullptr && (of == fraction || of == mass_fraction)) {
+    unit = unit_among(text, wanted.dimensions);
+  }
   if (unit == nullptr) {
     const std::array only{difference};
     Wanted narrowed = wanted;
@@ -454,12 +504,18 @@ constexpr int kMachineDigits = 9;
 
 Rounded rounded(double value, double expanded_uncertainty) {
   constexpr int digits_without_doubt = 4;
+  constexpr int most_digits = 5;
   if (!(expanded_uncertainty > 0)) return {significant(value, digits_without_doubt), ""};
   int decimals = decimals_for(expanded_uncertainty, kUncertaintyDigits);
   // 0.0996 rounds to 0.10: one decimal fewer keeps two significant digits.
   const double at_decimals =
       std::round(expanded_uncertainty * std::pow(10.0, decimals)) / std::pow(10.0, decimals);
   decimals = decimals_for(at_decimals * (1 + 1e-12), kUncertaintyDigits);
+  // A doubt that would call for more digits comes from conversions alone: it would pretend to a
+  // knowledge that nobody has.
+  if (value != 0 && decimals > decimals_for(std::abs(value), most_digits)) {
+    return {significant(value, digits_without_doubt), ""};
+  }
   return {fixed(value, decimals), fixed(expanded_uncertainty, decimals)};
 }
 

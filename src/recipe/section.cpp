@@ -170,6 +170,11 @@ std::optional<GivenPressure> Section::pressure(const std::string& key, std::stri
 std::optional<LocatedText> Section::text(const std::string& key, std::string_view example) {
   const Member* member = take(key);
   if (member == nullptr) return std::nullopt;
+  if (key == "basis" && member->value.kind == Node::Kind::boolean && member->value.boolean) {
+    // basis = true, without its quotes, can only mean one thing.
+    recipe_.inputs.emplace_back(full_key(key), "true");
+    return LocatedText{"true", member->value.place};
+  }
   if (member->value.kind != Node::Kind::text) {
     complain(member->value.place, "not-a-text",
              fmt::format("'{}' is {}, not a text", full_key(key), kind_name(member->value.kind)),

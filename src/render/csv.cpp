@@ -25,6 +25,19 @@ struct Column {
 
 std::vector<Column> columns_of(const Report& report) {
   std::vector<Column> columns;
+  columns.push_back({"relation", report.relation});
+  std::string codes;
+  for (const auto& caution : report.cautions) codes += (codes.empty() ? "" : " ") + caution.code;
+  columns.push_back({"cautions", codes});
+  columns.push_back({"recipe_digest", report.audit.recipe_digest});
+  columns.push_back({"constants_digest", report.audit.constants_digest});
+  for (const auto& j : report.judged) {
+    columns.push_back({"target." + j.gas + ".verdict", j.verdict == Verdict::inside ? "inside"
+                                                       : j.verdict == Verdict::outside
+                                                           ? "outside"
+                                                           : "undecided"});
+    columns.push_back({"target." + j.gas + ".probability", shortest(for_machines(j.probability))});
+  }
   each_figure(report.answer, [&](const FigurePath& path, const auto& figure, const JsonUnit& unit) {
     if (!figure.asked) return;
     const Unit in{unit.ucum, Dimension::fraction, unit.factor, unit.offset, Reference::none};
@@ -58,7 +71,7 @@ std::string csv_reports(const std::vector<std::pair<std::string, Report>>& repor
     for (const auto& name : names) {
       const auto it = std::find_if(rows[i].begin(), rows[i].end(),
                                    [&](const Column& c) { return c.name == name; });
-      out += "," + (it == rows[i].end() ? std::string() : it->value);
+      out += "," + (it == rows[i].end() ? std::string() : cell(it->value));
     }
     out += "\r\n";
   }

@@ -98,6 +98,14 @@ Json one(const Report& report, bool with_trace) {
   each_figure(report.answer, [&](const FigurePath& path, const auto& figure, const JsonUnit& unit) {
     if (figure.asked) descend(j, path) = quantity(figure, unit);
   });
+  for (const auto& t : report.judged) {
+    auto& target = j["target"][t.gas];
+    target["verdict"] = t.verdict == Verdict::inside    ? "inside"
+                        : t.verdict == Verdict::outside ? "outside"
+                                                        : "undecided";
+    target["probability"] = for_machines(t.probability);
+    target["wish"] = t.wish;
+  }
   j["relation"] = report.relation;
   j["second_opinion"] = Json::array();
   for (const auto& o : report.second_opinion) {

@@ -132,21 +132,47 @@ class TextReport {
     if (!r_.solved_for_pressure && a_.blend.empty()) saturation();
     for (const auto& c : a_.container) {
       pressures("In the closed package", c.pressure_gauge, c.pressure_absolute);
-      if (c.margin.asked)
-        line("  below its rating by", in_units(c.margin, Dimension::pressure, "bar"));
+      rating(c.margin, c.temperature);
     }
-    for (const auto& [gas, limit] : r_.limits) line(fmt::format("Limit for {}", gas), limit);
+    if (a_.opening_pressure.asked && differs_from_container(a_.opening_temperature)) {
+      line("  when opened", in_units(a_.opening_pressure, Dimension::pressure, "bar", " gauge"),
+           "at " + celsius(a_.opening_temperature));
+      rating(a_.opening_margin, a_.opening_temperature);
+    }
+    for (const auto& j : r_.judged) judged(j);
     opinions();
+  }
+
+  [[nodiscard]] bool differs_from_container(const Figure<Temperature>& t) const {
+    return a_.container.empty() || !(a_.container.front().temperature.value == t.value);
+  }
+
+  // A rating says nothing without the temperature.
+  void rating(const Figure<Pressure>& margin, const Figure<Temperature>& at) {
+    if (!margin.asked) return;
+    const bool above = margin.value.value() < 0;
+    line(above ? "  ABOVE ITS RATING, margin" : "  below its rating by",
+         in_units(margin, Dimension::pressure, "bar"), "at " + celsius(at));
+  }
+
+  void judged(const JudgedTarget& j) {
+    const std::string_view verdict = j.verdict == Verdict::inside    ? "inside"
+                                     : j.verdict == Verdict::outside ? "OUTSIDE"
+                                                                     : "UNDECIDED";
+    constexpr double percent = 100;
+    line(fmt::format("{} against {}", j.gas, j.wish), std::string(verdict),
+         j.doubt_stated ? fmt::format("probability of conformity {:.1f} %", percent * j.probability)
+                        : std::string("values compared, no doubt stated"));
   }
 
   void condition() {
     section("Where liquid and gas meet");
     line("Temperature", celsius(a_.temperature));
     pressures("Pressure", a_.pressure_gauge, a_.pressure_absolute);
-    line("Ambient pressure", shown(a_.ambient, unit("hPa", Dimension::pressure)));
-    line("Vapour of water", shown(a_.vapour, unit("kPa", Dimension::pressure)));
+    line("Ambient pressure", in_units(a_.ambient, Dimension::pressure, "hPa", " abs"));
+    line("Vapour of water", in_units(a_.vapour, Dimension::pressure, "kPa"));
     if (a_.ethanol.asked) {
-      line("Vapour of ethanol", shown(a_.ethanol, unit("kPa", Dimension::pressure)));
+      line("Vapour of ethanol", in_units(a_.ethanol, Dimension::pressure, "kPa"));
     }
     for (const auto& g : a_.gases) {
       line(fmt::format("Partial pressure of {}", g.gas),
@@ -196,7 +222,7 @@ class TextReport {
     constexpr double trace = 0.1;
     const std::string label = fmt::format("Dissolved {}", g.gas);
     if (g.mass_concentration.value.value() < trace) {
-      line(label, shown(g.mass_concentration, unit("mg/L", Dimension::mass_concentration)));
+      line(label, in_units(g.mass_concentration, Dimension::mass_concentration, "mg/L"));
       return;
     }
     line(label, shown(g.volumes, unit("vol", Dimension::gas_volumes)),

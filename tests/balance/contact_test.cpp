@@ -82,7 +82,7 @@ TEST_CASE("outside a range there is a caution with value and bounds, and a wider
   REQUIRE(outside.cautions.size() == 1);
   CHECK(outside.cautions[0].code == "out-of-range");
   CHECK(outside.cautions[0].message.find("13.01 bar abs") != std::string::npos);
-  CHECK(outside.cautions[0].message.find("8 bar") != std::string::npos);
+  CHECK(outside.cautions[0].message.find("8.000 bar abs") != std::string::npos);
   const auto relative = [](const Report& r) {
     const auto& f = r.answer.gases[0].mass_concentration;
     return si_value(f.u) / si_value(f.value);

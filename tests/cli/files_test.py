@@ -63,10 +63,10 @@ with tempfile.TemporaryDirectory() as scratch:
     check("a long file exits 2", done.returncode == 2 and b"bytes" in done.stderr, done)
 
     plain = run("report", "-", "--as", "json", stdin=can)
-    check("standard input is read", plain.returncode == 0, plain)
+    check("standard input is read; undecided exits 1", plain.returncode == 1, plain)
     for name, text in (("BOM", b"\xef\xbb\xbf" + can), ("CRLF", can.replace(b"\n", b"\r\n"))):
         done = run("report", "-", "--as", "json", stdin=text)
-        check(name + " is read", done.returncode == 0, done)
+        check(name + " is read", done.returncode == 1, done)
         a, b = json.loads(plain.stdout), json.loads(done.stdout)
         a.pop("audit"), b.pop("audit")
         check(name + " reads the same", a == b)
@@ -90,13 +90,26 @@ with tempfile.TemporaryDirectory() as scratch:
             done = subprocess.run([capsigh, "report", "-"], input=can, stdout=full, stderr=subprocess.PIPE)
         check("a full disk exits 3", done.returncode == 3 and b"No space" in done.stderr, done)
 
-    for arguments in ([], ["reprot", "x"], ["report"], ["report", "--set", "x"], ["report", "-", "--units", "furlong"], ["report", "-", "--as", "pdf"], ["report", "-", "--nope"]):
+    for arguments in ([], ["reprot", "x"], ["report"], ["report", "--set", "x"], ["report", "-", "--units", "furlong"], ["report", "-", "--units", "psig"], ["report", "-", "--as", "pdf"], ["report", "-", "--nope"]):
         done = run(*arguments, stdin=can)
         check(f"usage {arguments} exits 2", done.returncode == 2 and done.stderr, done)
     check("--help exits 0", run("--help").returncode == 0)
     check("--version exits 0", run("--version").stdout.strip() == b"0.3.0")
     done = run("report", "-", "--trace", stdin=can)
     check("--trace shows records", b"henry.CO2.weiss1974" in done.stdout, done)
+    sure = run("report", "-", "--set", "contact.pressure=1.62 bar gauge", "--set", "target.CO2={ min = \"3 vol\" }", stdin=can)
+    check("a target met exits 0, and --set lies over the file", sure.returncode == 0, sure)
+    over = run("report", "-", "--set", "container.rated=1 bar gauge", "--set", "target.CO2=3.7 vol", stdin=can)
+    check("a rating below the package exits 1", over.returncode == 1 and b"DANGER" in over.stdout, over)
+    order = run("report", "--set", "target.CO2=3.7 vol", top / "scenarios/sparkling-water-can.toml", "--units", "psi",
+                top / "scenarios/lager.toml")
+    check("options do not swallow recipes", order.returncode in (0, 1) and b"psi gauge" in order.stdout, order)
+    line = run("report", "--set", 'liquid.like=beer', "--set", "liquid.basis=true", "--set",
+               'contact.temperature="6 degC"', "--set", "contact.pressure=1 bar gauge")
+    check("one line without a file", line.returncode == 0 and b"as tested, by ASBC" in line.stdout, line)
+    shared = run("report", "-", "--with", top / "scenarios/shared/quillbeck.toml", "--as", "json",
+                 stdin=b'[contact]\ntemperature = "4 degC"\npressure = "1 bar gauge"\n')
+    check("--with lies under the recipe", abs(json.loads(shared.stdout)["condition"]["ambient"]["value"] - 97.19) < 0.01)
     hot = b'[contact]\ntemperature = "4 degC"\npressure = "12 bar gauge"\n'
     check("a caution alone exits 0", run("report", "-", stdin=hot).returncode == 0)
     check("--strict exits 2", run("report", "-", "--strict", stdin=hot).returncode == 2)

@@ -17,7 +17,7 @@ THEIRS = {"bar": "bar", "barg": "bar", "bara": "bar", "mbar": "mbar", "hPa": "hP
           "µg/L": "ug/L", "g/100 mL": "g/(100 mL)", "kg/hL": "kg/hL", "kg/m3": "kg/m^3", "g/mL": "g/mL",
           "g/cm3": "g/cm^3", "mol/L": "mol/L", "mmol/L": "mmol/L", "mol/kg": "mol/kg", "mmol/kg": "mmol/kg",
           "% w/w": "percent", "g/kg": "g/kg", "mg/kg": "mg/kg", "ppm": "1e-6", "ppb": "1e-9", "Brix": "percent",
-          "°Bx": "percent", "Plato": "percent", "°P": "percent", "% v/v": "percent", "% vol": "percent", "s": "s",
+          "°Brix": "percent", "°Bx": "percent", "Plato": "percent", "°P": "percent", "% v/v": "percent", "% vol": "percent", "s": "s",
           "min": "min", "h": "hour", "d": "day", "wk": "week", "m2": "m^2", "cm2": "cm^2", "kg/h": "kg/hour",
           "g/s": "g/s", "lb/h": "lb/hour", "m3/h": "m^3/hour", "hL/h": "hL/hour", "L/min": "L/min",
           "ft3/min": "ft^3/min", "m3/h normal": "m^3/hour", "1/s": "1/s", "1/min": "1/min", "1/h": "1/hour",

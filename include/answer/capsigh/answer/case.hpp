@@ -24,6 +24,7 @@ struct ContentCase {
   ContentMeasure measure = ContentMeasure::volumes;
   Uncertain<Fraction> amount;
   bool is_limit = false;  ///< of a target: a maximum or minimum, which nothing is solved for
+  Interval accepted;      ///< of a target: what conforms, in SI units of the measure
 };
 
 /// One line of the headspace's composition: a gas or a mixture, its share, and how that splits over

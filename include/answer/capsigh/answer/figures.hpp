@@ -109,7 +109,10 @@ struct Answer {
   PerGas<GasFigures> gases;
   PerGas<SaturationFigures> saturation;
   boost::container::static_vector<ContainerFigures, 8> container;
-  Figure<Temperature> opening_temperature;  ///< for the text; not part of the contract
+  Figure<Temperature> opening_temperature;
+  Figure<GaugePressure> opening_pressure;  ///< of the package when it is opened
+  Figure<Pressure> opening_margin;         ///< rating less that
+  bool breaks_out_above = false;           ///< the depth holds more than the headspace does
   PerGas<LossFigures> opening;
 };
 
@@ -174,6 +177,9 @@ void each_figure(A& a, F&& f) {
     f(at.then("headspace").then("partial_pressure").then("ethanol"), c.ethanol, kilopascal);
     detail::each_gas_figure(c.gases, at, f);
   }
+  f(FigurePath("opening", "temperature"), a.opening_temperature, celsius);
+  f(FigurePath("opening", "pressure_gauge"), a.opening_pressure, kilopascal);
+  f(FigurePath("opening", "margin"), a.opening_margin, kilopascal);
   for (auto& loss : a.opening) {
     const FigurePath at =
         loss.gas.empty() ? FigurePath("opening") : FigurePath("opening", loss.gas);

@@ -9,6 +9,7 @@
 #include "capsigh/answer/doubt.hpp"
 #include "capsigh/answer/figures.hpp"
 #include "capsigh/answer/second_opinion.hpp"
+#include "capsigh/quality/verdict.hpp"
 
 namespace capsigh {
 
@@ -29,6 +30,15 @@ struct Audit {
   std::vector<std::pair<std::string, std::string>> inputs;
 };
 
+/// A target or limit judged against the content at the contact.
+struct JudgedTarget {
+  std::string gas;
+  std::string wish;  ///< in the recipe's words
+  Verdict verdict = Verdict::undecided;
+  double probability = 0;  ///< of conformity
+  bool doubt_stated = true;
+};
+
 struct Report {
   std::string title;
   std::vector<std::pair<std::string, std::string>> about;
@@ -40,6 +50,7 @@ struct Report {
   bool solved_for_temperature = false;
   std::vector<std::pair<std::string, std::string>> targets;  ///< gas and content as asked
   std::vector<std::pair<std::string, std::string>> limits;   ///< gas and its max or min
+  std::vector<JudgedTarget> judged;
   std::vector<SecondOpinion> second_opinion;
   std::vector<BudgetLine> budget;
   std::vector<std::string> doubt_not_stated;

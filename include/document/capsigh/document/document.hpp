@@ -38,7 +38,7 @@ struct Member {
 std::string_view kind_name(Node::Kind kind);
 
 struct DocumentLimits {
-  std::size_t bytes = 64 * 1024;
+  std::size_t bytes = std::size_t{64} * 1024;
   std::size_t depth = 64;
   std::size_t line = 4096;
 };
