@@ -54,7 +54,7 @@ class TrialPressure {
     state_.pressure = from_si<Pressure>(pascal);
     double excess = 0;
     constexpr int most_rounds = 200;
-    constexpr double settled = 1e-15;
+    constexpr double settled = 1e-14;
     for (int round = 0; round < most_rounds; ++round) {
       const double change = redistribute(excess);
       if (change < settled) break;

@@ -533,12 +533,23 @@ std::string significant(double value, int digits) {
 
 std::string shortest(double value) { return fmt::format("{}", value == 0 ? 0.0 : value); }
 
-double for_machines(double value) {
+namespace {
+
+double kept_digits(double value, int digits) {
   if (value == 0) return 0;
-  const std::string text = fmt::format("{:.{}e}", value, kMachineDigits - 1);
+  const std::string text = fmt::format("{:.{}e}", value, digits - 1);
   double kept = 0;
   std::from_chars(text.data(), text.data() + text.size(), kept);
   return kept;
+}
+
+}  // namespace
+
+double for_machines(double value) { return kept_digits(value, kMachineDigits); }
+
+double doubt_for_machines(double value) {
+  constexpr int digits = 6;
+  return kept_digits(value, digits);
 }
 
 }  // namespace capsigh

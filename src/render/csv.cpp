@@ -36,7 +36,8 @@ std::vector<Column> columns_of(const Report& report) {
                                                        : j.verdict == Verdict::outside
                                                            ? "outside"
                                                            : "undecided"});
-    columns.push_back({"target." + j.gas + ".probability", shortest(for_machines(j.probability))});
+    columns.push_back(
+        {"target." + j.gas + ".probability", shortest(doubt_for_machines(j.probability))});
   }
   each_figure(report.answer, [&](const FigurePath& path, const auto& figure, const JsonUnit& unit) {
     if (!figure.asked) return;
@@ -44,7 +45,7 @@ std::vector<Column> columns_of(const Report& report) {
     const std::string head = path.text() + " [" + std::string(unit.ucum) + "]";
     columns.push_back({head, shortest(for_machines(in_unit(si_value(figure.value), in)))});
     const double u = difference_in_unit(si_value(figure.u), in);
-    columns.push_back({"u " + head, u > 0 ? shortest(for_machines(u)) : ""});
+    columns.push_back({"u " + head, u > 0 ? shortest(doubt_for_machines(u)) : ""});
   });
   return columns;
 }

@@ -38,7 +38,7 @@ Json quantity(const Figure<Q>& figure, const JsonUnit& unit) {
   q["value"] = for_machines(in_unit(si_value(figure.value), in));
   q["unit"] = unit.ucum;
   const double u = difference_in_unit(si_value(figure.u), in);
-  if (u > 0) q["u"] = for_machines(u);
+  if (u > 0) q["u"] = doubt_for_machines(u);
   return q;
 }
 
@@ -54,9 +54,9 @@ Json budget(const std::vector<BudgetLine>& lines) {
     out.push_back({{"of", line.of},
                    {"input", line.input},
                    {"kind", line.is_record ? "record" : "input"},
-                   {"u", {{"value", for_machines(line.u)}, {"unit", line.u_unit}}},
-                   {"share", for_machines(line.share)},
-                   {"contribution", for_machines(line.contribution)}});
+                   {"u", {{"value", doubt_for_machines(line.u)}, {"unit", line.u_unit}}},
+                   {"share", doubt_for_machines(line.share)},
+                   {"contribution", doubt_for_machines(line.contribution)}});
   }
   return out;
 }
@@ -103,7 +103,7 @@ Json one(const Report& report, bool with_trace) {
     target["verdict"] = t.verdict == Verdict::inside    ? "inside"
                         : t.verdict == Verdict::outside ? "outside"
                                                         : "undecided";
-    target["probability"] = for_machines(t.probability);
+    target["probability"] = doubt_for_machines(t.probability);
     target["wish"] = t.wish;
   }
   j["relation"] = report.relation;
@@ -113,7 +113,7 @@ Json one(const Report& report, bool with_trace) {
         {{"relation", o.relation},
          {"quantity", o.quantity},
          {"value", {{"value", for_machines(o.value)}, {"unit", o.unit.ucum}}},
-         {"difference", {{"value", for_machines(o.difference)}, {"unit", "%"}}}});
+         {"difference", {{"value", doubt_for_machines(o.difference)}, {"unit", "%"}}}});
   }
   j["budget"] = budget(report.budget);
   j["doubt_not_stated"] = report.doubt_not_stated;

@@ -104,5 +104,7 @@ std::string shortest(double value);
 /// A number kept to nine significant digits, as machine-readable output carries it: the last bits
 /// that differ between compilers are not information.
 double for_machines(double value);
+/// The same for an uncertainty or a share, which come from differences: six digits.
+double doubt_for_machines(double value);
 
 }  // namespace capsigh
