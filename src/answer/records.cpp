@@ -78,12 +78,16 @@ HenryChain henry_chain(const Library& library, const Record& selection, const Me
   return chain;
 }
 
-VirialForm virial_form(const Record& record, const Medium& m) {
+VirialForm virial_form(const Library& library, const Record& record, const Medium& m) {
   if (record.form == "tsonopoulos") {
     const auto& bar = *find_unit("bar", Dimension::pressure);
+    const auto f = library.at("virial_form.tsonopoulos").values;
     return TsonopoulosVirial{from_si<Temperature>(record.values[0].value),
                              from_si<Pressure>(record.values[1].value * bar.factor),
-                             record.values[2].value, m.r};
+                             record.values[2].value,
+                             m.r,
+                             {f[0].value, f[1].value, f[2].value, f[3].value, f[4].value},
+                             {f[5].value, f[6].value, f[7].value, f[8].value}};
   }
   if (record.form == "power-series") {
     return PowerSeriesVirial{coefficients<4>(record), record.factor};
@@ -98,7 +102,7 @@ GasModel gas_model(const Library& library, const std::string& name, const Medium
   gas.molar_mass = cited_constant<MolarMass>(library.at(key_of("molar_mass", name)));
   gas.henry = henry_chain(library, selection, m);
   const Record& virial = library.at(key_of("virial", name));
-  gas.virial = virial_form(virial, m);
+  gas.virial = virial_form(library, virial, m);
   gas.virial_doubt = doubt_of(virial);
   gas.molar_volume = cited_constant<MolarVolume>(library.at(key_of("molar_volume", name)));
   const Record* salting = library.find(key_of("sechenov", name));

@@ -2,7 +2,7 @@
 
 #include <cmath>
 
-#include "capsigh/balance/root.hpp"
+#include "capsigh/balance/bracketing.hpp"
 #include "capsigh/quantity/grammar.hpp"
 #include "solver.hpp"
 

@@ -3,7 +3,7 @@
 #include <cmath>
 #include <numeric>
 
-#include "capsigh/balance/root.hpp"
+#include "capsigh/balance/bracketing.hpp"
 
 namespace capsigh {
 namespace {

@@ -3,7 +3,7 @@
 #include <algorithm>
 #include <cmath>
 
-#include "capsigh/balance/root.hpp"
+#include "capsigh/balance/bracketing.hpp"
 
 namespace capsigh {
 

@@ -28,10 +28,10 @@ MolarVolume TsonopoulosVirial::operator()(Temperature t) const {
   const double x2 = x * x;
   const double x3 = x2 * x;
   const double x8 = x3 * x3 * x2;
-  const double f0 = 0.1445 - 0.330 * x - 0.1385 * x2 - 0.0121 * x3 - 0.000607 * x8;
-  const double f1 = 0.0637 + 0.331 * x2 - 0.423 * x3 - 0.008 * x8;
+  const double simple = f0[0] + f0[1] * x + f0[2] * x2 + f0[3] * x3 + f0[4] * x8;
+  const double acentric = f1[0] + f1[1] * x2 + f1[2] * x3 + f1[3] * x8;
   return from_si<MolarVolume>(r.value() * critical_temperature.kelvin() /
-                              critical_pressure.value() * (f0 + acentric_factor * f1));
+                              critical_pressure.value() * (simple + acentric_factor * acentric));
 }
 
 MolarVolume CrossVirialExcess::operator()(Temperature t) const {

@@ -39,15 +39,16 @@ struct InverseTemperatureVirial {
 };
 
 /// B = (R Tc/pc) (f0 + ω f1), Tr = T/Tc (corresponding states):
-///   f0 = 0.1445 − 0.330/Tr − 0.1385/Tr² − 0.0121/Tr³ − 0.000607/Tr⁸
-///   f1 = 0.0637 + 0.331/Tr² − 0.423/Tr³ − 0.008/Tr⁸
-/// Source: Tsonopoulos C., AIChE J. 20 (1974) 263, for non-polar gases; coefficients are part of
-/// the form. Worked value: Xe at 298.15 K about −130 cm³/mol.
+///   f0 = a0 + a1/Tr + a2/Tr² + a3/Tr³ + a8/Tr⁸,   f1 = b0 + b2/Tr² + b3/Tr³ + b8/Tr⁸
+/// Source: Tsonopoulos 1974, for non-polar gases (record virial_form.tsonopoulos). Worked value: Xe
+/// at 298.15 K about −130 cm³/mol.
 struct TsonopoulosVirial {
   Temperature critical_temperature;
   Pressure critical_pressure{};
   double acentric_factor = 0;
   GasConstant r{};
+  std::array<double, 5> f0{};  ///< powers 0, 1, 2, 3, 8 of 1/Tr
+  std::array<double, 4> f1{};  ///< powers 0, 2, 3, 8
 
   static constexpr LawInfo<1> info{"second virial coefficient, corresponding states",
                                    "B = (R Tc/pc) (f0(Tr) + omega f1(Tr))",

@@ -1,5 +1,5 @@
 // The one unit grammar: "2.3 bar gauge ± 0.05 bar" in and out. Conversion and rounding live here
-// and nowhere else. A new unit is one row of the table in grammar.cpp.
+// and nowhere else. A new unit is one row of unit_table.cpp.
 #pragma once
 
 #include <optional>
