@@ -218,7 +218,8 @@ void RecipeCheck::check_contact() {
           "the content of one gas; the others follow from [gas]",
           "dissolved = { CO2 = \"3.7 vol\" }", contact->dissolved_place);
   }
-  const int known = int{temperature} + int{pressure} + int{dissolved};
+  const int known =
+      static_cast<int>(temperature) + static_cast<int>(pressure) + static_cast<int>(dissolved);
   const bool wish = std::any_of(recipe_.target.begin(), recipe_.target.end(),
                                 [](const auto& t) { return !t.is_maximum && !t.is_minimum; });
   if (known == 2 || (known == 1 && !dissolved && wish)) return;

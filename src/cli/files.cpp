@@ -24,7 +24,7 @@ Finding failure(const std::string& path, const std::string& what, int error) {
 }
 
 struct CloseFile {
-  void operator()(std::FILE* file) const { std::fclose(file); }
+  void operator()(std::FILE* file) const { static_cast<void>(std::fclose(file)); }
 };
 using File = std::unique_ptr<std::FILE, CloseFile>;
 
@@ -52,13 +52,13 @@ std::optional<Finding> replace(const std::string& place, const std::string& path
     if (!file) return failure(path, "cannot be written", errno);
     if (!write_all(file.get(), text)) {
       const int error = errno;
-      std::remove(partial.c_str());
+      static_cast<void>(std::remove(partial.c_str()));
       return failure(path, "cannot be written", error);
     }
   }
   if (std::rename(partial.c_str(), place.c_str()) != 0) {
     const int error = errno;
-    std::remove(partial.c_str());
+    static_cast<void>(std::remove(partial.c_str()));
     return failure(path, "cannot be written", error);
   }
   return std::nullopt;

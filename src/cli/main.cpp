@@ -99,6 +99,7 @@ std::string rendered(const std::vector<std::pair<std::string, Report>>& reports,
   if (arguments.as == "csv") return csv_reports(reports);
   if (arguments.as == "json") {
     std::vector<Report> all;
+    all.reserve(reports.size());
     for (const auto& [file, report] : reports) all.push_back(report);
     return json_reports(all, arguments.trace);
   }
