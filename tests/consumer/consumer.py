@@ -11,7 +11,7 @@ with tempfile.TemporaryDirectory() as scratch:
     def run(*command):
         subprocess.run(command, check=True, stdout=subprocess.DEVNULL)
     run(cmake, "--install", build, "--prefix", f"{scratch}/prefix")
-    run(cmake, "-S", project, "-B", f"{scratch}/build", f"-DCMAKE_PREFIX_PATH={scratch}/prefix",
+    run(cmake, "-G", "Ninja", "-S", project, "-B", f"{scratch}/build", f"-DCMAKE_PREFIX_PATH={scratch}/prefix",
         f"-DCMAKE_CXX_COMPILER={cxx}", "-DCMAKE_BUILD_TYPE=Debug", *flags)
     run(cmake, "--build", f"{scratch}/build")
     out = subprocess.run([f"{scratch}/build/consumer"], check=True, capture_output=True, text=True).stdout
