@@ -74,7 +74,7 @@ Outcome<std::string> read_input(const std::string& path) {
   }
   std::error_code error;
   if (std::filesystem::is_directory(path, error)) {
-    return {{}, {failure(path, "is a directory, not a recipe", EISDIR)}};
+    return {{}, {failure(path, "cannot be read as a recipe", EISDIR)}};
   }
   const File file(std::fopen(path.c_str(), "rb"));
   if (!file) return {{}, {failure(path, "cannot be opened", errno)}};

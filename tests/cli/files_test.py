@@ -33,7 +33,7 @@ with tempfile.TemporaryDirectory() as scratch:
     done = run("report", scratch / "none.toml")
     check("a missing file exits 3", done.returncode == 3 and b"No such file" in done.stderr, done)
     done = run("report", scratch)
-    check("a directory exits 3", done.returncode == 3 and b"is a directory" in done.stderr, done)
+    check("a directory exits 3", done.returncode == 3 and b"Is a directory" in done.stderr, done)
     secret = scratch / "secret.toml"
     secret.write_bytes(can)
     secret.chmod(0)

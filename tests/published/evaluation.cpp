@@ -36,8 +36,7 @@ Said said(const std::string& gas, const std::string& liquid, double kelvin, doub
   const auto& g = report.answer.gases[0];
   const Medium m = medium(gas + " = \"100 %\"");
   Said s;
-  const double molar_mass =
-      si_value(g.mass_fraction.value) == 0 ? 1 : m.gases[0].molar_mass.law.value.value();
+  const double molar_mass = m.gases[0].molar_mass.law.value.value();
   s.b = si_value(g.mass_fraction.value) / molar_mass;
   s.u = si_value(g.mass_fraction.u) / si_value(g.mass_fraction.value);
   s.density = m.liquid.water_density.law(from_si<Temperature>(kelvin)).value();
@@ -277,12 +276,10 @@ SetResult oiml_density() {
 SetResult sucrose_density() {
   SetResult set{"sucrose solutions to 30 %, kg/m3", "kg/m3", {}};
   for (const auto& row : table("sucrose_density.csv")) {
-    const double percent = number(row, "percent");
     const auto c = binding("[liquid]\nsucrose = \"" + row.at("percent") +
                            " % w/w\"\n[contact]\ntemperature = \"20 degC\"\npressure = \"2 bar "
                            "abs\"\n")
                        .problem;
-    static_cast<void>(percent);
     const double ours = liquid_of(c.medium).density.value();
     set.points.push_back({number(row, "rho") - ours, 0.1, 20});
   }
