@@ -33,10 +33,23 @@ std::optional<std::vector<double>> moved(Case& c, const Doubt& doubt, double z) 
   return flatten(std::get<Answer>(result));
 }
 
-// What one standard uncertainty of a doubt moves every figure by: half the way from z = −1 to +1;
-// one-sided where only one side has an answer. nullopt: no side has one.
-std::optional<std::vector<double>> sensitivities(Case& c, const Doubt& doubt,
-                                                 const std::vector<double>& at_best) {
+// What one doubt does to every figure: what one standard uncertainty moves it by, and the variance
+// that its curvature adds (second order; infinite where only one side has an answer).
+struct Sensitivity {
+  std::vector<double> change;
+  std::vector<double> curved;
+};
+
+// Of ½ f''(z² − 1): ¼ f''² Var z², where Var z² is 2 for a normal z and 4/5 for a rectangular one.
+double variance_of_curvature(double second_difference, Shape shape) {
+  const double variance_of_square = shape == Shape::rectangular ? 0.8 : 2.0;
+  return 0.25 * second_difference * second_difference * variance_of_square;
+}
+
+// Half the way from z = −1 to +1; one-sided where only one side has an answer. nullopt: no side
+// has one.
+std::optional<Sensitivity> sensitivity(Case& c, const Doubt& doubt,
+                                       const std::vector<double>& at_best) {
   const auto up = moved(c, doubt, 1.0);
   const auto down = moved(c, doubt, -1.0);
   if (!up && !down) return std::nullopt;
@@ -45,15 +58,20 @@ std::optional<std::vector<double>> sensitivities(Case& c, const Doubt& doubt,
   const auto side = [&](const std::optional<std::vector<double>>& values, std::size_t i) {
     return values && std::isfinite((*values)[i]);
   };
-  std::vector<double> change(at_best.size(), 0.0);
-  for (std::size_t i = 0; i < change.size(); ++i) {
+  Sensitivity s{std::vector<double>(at_best.size(), 0.0), std::vector<double>(at_best.size(), 0.0)};
+  for (std::size_t i = 0; i < at_best.size(); ++i) {
     const double high = side(up, i) ? (*up)[i] : at_best[i];
     const double low = side(down, i) ? (*down)[i] : at_best[i];
     const double sides = (side(up, i) ? 1 : 0) + (side(down, i) ? 1 : 0);
-    if (sides > 0) change[i] = (high - low) / sides;
-    if (!(std::abs(change[i]) > noise * std::abs(at_best[i]))) change[i] = 0;
+    if (sides > 0) s.change[i] = (high - low) / sides;
+    if (!(std::abs(s.change[i]) > noise * std::abs(at_best[i]))) s.change[i] = 0;
+    const double second = high + low - 2 * at_best[i];
+    if (sides == 1) s.curved[i] = std::numeric_limits<double>::infinity();
+    if (sides == 2 && std::abs(second) > noise * std::abs(at_best[i])) {
+      s.curved[i] = variance_of_curvature(second, doubt.shape);
+    }
   }
-  return change;
+  return s;
 }
 
 Finding too_wide(const Doubt& doubt) {
@@ -68,7 +86,7 @@ Finding too_wide(const Doubt& doubt) {
 bool main_figure(const std::string& path) {
   return path.ends_with(".volumes") || path.ends_with(".mass_concentration") ||
          path.ends_with(".pressure_gauge") || path == "condition.temperature" ||
-         path.starts_with("saturation.") || path.ends_with("_loss");
+         path.starts_with("saturation.") || path.starts_with("blend.") || path.ends_with("_loss");
 }
 
 std::string quantity_text(double si, std::string_view unit, Dimension dimension) {
@@ -121,11 +139,17 @@ Propagation propagate(Case& c, Answer& answer) {
   const auto at_best = flatten(answer);
   std::vector<std::vector<double>> changes;
   changes.reserve(doubts.size());
+  std::vector<double> curved(at_best.size(), 0.0);
   Propagation result;
   for (const auto& doubt : doubts) {
-    auto change = sensitivities(c, doubt, at_best);
-    if (!change) result.findings.push_back(too_wide(doubt));
-    changes.push_back(change.value_or(std::vector<double>(at_best.size(), 0.0)));
+    auto moved_by = sensitivity(c, doubt, at_best);
+    if (!moved_by) {
+      result.findings.push_back(too_wide(doubt));
+      moved_by = {std::vector<double>(at_best.size(), 0.0),
+                  std::vector<double>(at_best.size(), 0.0)};
+    }
+    for (std::size_t i = 0; i < curved.size(); ++i) curved[i] += moved_by->curved[i];
+    changes.push_back(std::move(moved_by->change));
   }
   auto& budget = result.budget;
   std::size_t slot = 0;
@@ -133,6 +157,9 @@ Propagation propagate(Case& c, Answer& answer) {
     double variance = 0;
     for (const auto& change : changes) variance += change[slot] * change[slot];
     figure.u = from_si<std::decay_t<decltype(figure.u)>>(std::sqrt(variance));
+    // Two per cent of the variance are one of u.
+    constexpr double bends = 0.02;
+    figure.nonlinear = figure.asked && curved[slot] > bends * variance;
     const std::string of = path.text();
     if (figure.asked && variance > 0 && main_figure(of)) {
       const auto first = static_cast<std::ptrdiff_t>(budget.size());

@@ -31,6 +31,7 @@ void RecipeCheck::check() {
   check_contents();
   check_altitude();
   if (recipe_.container) check_container(*recipe_.container);
+  if (recipe_.judging) check_judging(*recipe_.judging);
 }
 
 void RecipeCheck::error(std::string code, std::string message, std::string expected,
@@ -343,6 +344,25 @@ void RecipeCheck::check_container(const ContainerSection& container) {
     error("container-overfilled", "the fill leaves no headspace in the container",
           "a fill below brimful", "", fill.source.place, brimful.source.place);
   }
+}
+
+void RecipeCheck::check_judging(const JudgingSection& judging) {
+  if (recipe_.target.empty() && recipe_.readable) {
+    error("judging-nothing", "[judging] has nothing to judge: the recipe has no [target]",
+          "a [target] with a tolerance or a limit", "[target]\nCO2 = \"3.70 vol ± 0.10 vol\"",
+          judging.place);
+  }
+  if (judging.rule && judging.rule->text != "guarded" && judging.rule->text != "simple") {
+    error("unknown-rule", fmt::format("no rule is called '{}'", judging.rule->text),
+          "\"guarded\" (inside only where the doubt allows it) or \"simple\" (values are compared)",
+          "rule = \"guarded\"", judging.rule->place);
+  }
+  if (!judging.risk || !judging.risk->value) return;
+  // At half, inside and outside would overlap.
+  constexpr double most = 0.5;
+  if (judging.risk->value->value() < most) return;
+  error("impossible-value", "a risk of half or more decides nothing", "above 0 % and below 50 %",
+        "risk = \"5 %\"", judging.risk->source.place);
 }
 
 }  // namespace capsigh::answer_detail

@@ -65,6 +65,7 @@ class RecipeCheck {
   const GivenTarget* wanted_of(const std::string& gas) const;
   void check_altitude();
   void check_container(const ContainerSection& container);
+  void check_judging(const JudgingSection& judging);
 };
 
 }  // namespace capsigh::answer_detail

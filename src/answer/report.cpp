@@ -6,6 +6,7 @@
 
 #include "capsigh/answer/solve.hpp"
 #include "capsigh/quantity/grammar.hpp"
+#include "judging.hpp"
 
 namespace capsigh {
 namespace {
@@ -177,43 +178,51 @@ void judge_rating(Report& report) {
   above(report.answer.opening_margin, report.answer.opening_temperature);
 }
 
-// The figure of a gas in the measure of its target: value and u in SI units.
-std::pair<double, double> in_measure(const GasFigures& g, ContentMeasure measure,
-                                     double molar_mass) {
-  const auto both = [](const auto& figure) {
-    return std::pair{si_value(figure.value), si_value(figure.u)};
-  };
-  switch (measure) {
-    case ContentMeasure::volumes: return both(g.volumes);
-    case ContentMeasure::mass_concentration: return both(g.mass_concentration);
-    case ContentMeasure::amount_concentration: return both(g.amount_concentration);
-    case ContentMeasure::mass_fraction: return both(g.mass_fraction);
-    case ContentMeasure::molality: break;
+// The figures that answer the question, as the text report shows them.
+std::vector<std::string> main_figures(const Report& report) {
+  std::vector<std::string> paths;
+  const auto& a = report.answer;
+  for (const auto& b : a.blend) paths.push_back(FigurePath("blend", b.gas).text());
+  if (report.solved_for_temperature) paths.emplace_back("condition.temperature");
+  if (report.solved_for_pressure) paths.emplace_back("condition.pressure_gauge");
+  if (!report.solved_for_temperature && !report.solved_for_pressure) {
+    for (const auto& g : a.gases) {
+      const bool trace = is_trace(g);
+      paths.push_back(
+          FigurePath("dissolved", g.gas, trace ? "mass_concentration" : "volumes").text());
+    }
   }
-  const auto [value, u] = both(g.mass_fraction);
-  return {value / molar_mass, u / molar_mass};
+  if (!report.solved_for_pressure && a.blend.empty()) {
+    for (const auto& s : a.saturation) {
+      const FigurePath at("saturation", s.gas);
+      paths.push_back(at.then(s.pressure_gauge.asked ? "pressure_gauge" : "temperature").text());
+    }
+  }
+  if (!a.container.empty()) paths.emplace_back("container.at.0.pressure_gauge");
+  return paths;
 }
 
-// Targets and limits against the content, where the contact is known without them.
-void judge_targets(const Binding& binding, const Library& library, Report& report) {
-  const Case& c = binding.problem;
-  if (c.content_from_target || !report.answer.blend.empty() || c.target_at_package) return;
-  const double risk =
-      library.at("assumed.risk").values[0].value * library.at("assumed.risk").factor;
-  std::size_t wish = 0;
-  std::size_t limit = 0;
-  for (const auto& target : c.targets) {
-    const auto& words = target.is_limit ? report.limits[limit++] : report.targets[wish++];
-    if (!target.accepted.bounded()) continue;  // a wish without a tolerance judges nothing
-    for (const auto& g : report.answer.gases) {
-      if (g.gas != c.medium.gases[target.gas].name) continue;
-      const auto [y, u] =
-          in_measure(g, target.measure, c.medium.gases[target.gas].molar_mass.law.value.value());
-      const auto judgement = judge(y, u, target.accepted, risk);
-      report.judged.push_back(
-          {words.first, words.second, judgement.verdict, judgement.probability, u > 0});
-      report.limits_met = report.limits_met && judgement.verdict == Verdict::inside;
-    }
+void draw(const Case& c, const MonteCarloOptions& options, const Library& library, Report& report) {
+  const auto share = [&](std::string_view key) {
+    return library.at(key).values[0].value * library.at(key).factor;
+  };
+  report.monte_carlo = monte_carlo(c, report.answer, options, share("assumed.coverage"),
+                                   share("assumed.most_unanswered"), share("assumed.agreement"));
+  append(report.cautions, report.monte_carlo->cautions);
+}
+
+void explain_doubts(Report& report) {
+  constexpr double half = 0.5;
+  for (const auto& path : main_figures(report)) {
+    MainDoubt d;
+    d.of = path;
+    d.lines = budget_of(report.budget, path);
+    if (d.lines.empty()) continue;
+    d.to_halve = advise(d.lines, half);
+    each_figure(report.answer, [&](const FigurePath& of, const auto& figure, const JsonUnit&) {
+      if (of.text() == path) d.nonlinear = figure.nonlinear;
+    });
+    report.main_doubts.push_back(std::move(d));
   }
 }
 
@@ -278,7 +287,9 @@ Outcome<Report> report(const Outcome<Recipe>& recipe, std::string_view recipe_te
     return {{}, propagation.findings};
   }
   report.budget = std::move(propagation.budget);
-  judge_targets(*binding, library, report);
+  if (options.monte_carlo.draws > 0) draw(problem, options.monte_carlo, library, report);
+  explain_doubts(report);
+  answer_detail::judge_targets(*binding, answer_detail::rule_of(*recipe, library), report);
   report.sources = cited_sources(report.trace, *binding, library);
   report.audit.version = version();
   report.audit.recipe_digest = sha1_digest(recipe_text);

@@ -16,7 +16,7 @@ OrRefusal<Answer> Solver::run() {
   if (!refusal && c_.opening) refusal = by(AskedBy::opening, answer_opening());
   if (!refusal) refusal = all_finite();
   if (refusal) return *refusal;
-  return answer_;
+  return std::move(answer_);
 }
 
 std::optional<Refusal> Solver::by(AskedBy step, Maybe refusal) {

@@ -1,5 +1,8 @@
 #include "capsigh/balance/liquid.hpp"
 
+#include <cmath>
+#include <limits>
+
 namespace capsigh {
 namespace {
 
@@ -78,7 +81,10 @@ Liquid compose(const LiquidModel& m, Temperature twenty, Trace* trace) {
     const double volume = pair / pair_density(m, share, water_density, twenty, nullptr) +
                           sugar_volume(m, masses.sugar, water, water_density, nullptr) +
                           masses.rest_volume;
-    density += (1.0 - volume) * water_density;
+    const double step = (1.0 - volume) * water_density;
+    density += step;
+    constexpr double settled = 4 * std::numeric_limits<double>::epsilon();
+    if (std::abs(step) <= settled * density) break;
   }
   l.pair_mass = water + masses.ethanol;
   l.ethanol_in_pair = masses.ethanol / l.pair_mass;

@@ -3,11 +3,15 @@
 
 #include <CLI/CLI.hpp>
 #include <algorithm>
+#include <charconv>
 #include <cstdio>
 #include <exception>
+#include <limits>
+#include <thread>
 
 #include "capsigh/render/render.hpp"
 #include "files.hpp"
+#include "progress.hpp"
 
 namespace {
 
@@ -24,6 +28,9 @@ struct ReportArguments {
   std::string out;
   bool strict = false;
   bool trace = false;
+  std::uint64_t draws = 0;
+  std::uint64_t seed = 1;
+  unsigned threads = 0;
 };
 
 int fail(const Findings& findings, int status) {
@@ -45,7 +52,10 @@ Outcome<std::vector<const Unit*>> display_units(const std::vector<std::string>& 
     const auto shown = [&](const Unit& u) {
       return u.text == name && u.reference == Reference::none &&
              (u.dimension == Dimension::pressure || u.dimension == Dimension::temperature ||
-              u.dimension == Dimension::mass_concentration);
+              u.dimension == Dimension::mass || u.dimension == Dimension::gas_volumes ||
+              u.dimension == Dimension::mass_concentration ||
+              u.dimension == Dimension::amount_concentration ||
+              u.dimension == Dimension::mass_fraction);
     };
     const auto it = std::find_if(all.begin(), all.end(), shown);
     if (it == all.end()) {
@@ -53,8 +63,8 @@ Outcome<std::vector<const Unit*>> display_units(const std::vector<std::string>& 
       f.code = "unit-unknown";
       f.message = "--units: nothing is displayed in '" + name + "'";
       f.expected =
-          "units of pressure (without gauge or abs), temperature or mass concentration: "
-          "psi,degF,mg/L";
+          "units of pressure (without gauge or abs), temperature, content or mass: "
+          "psi,degF,vol,g";
       return {{}, {f}};
     }
     units.push_back(&*it);
@@ -111,6 +121,25 @@ std::string rendered(const std::vector<std::pair<std::string, Report>>& reports,
   return text;
 }
 
+MonteCarloOptions monte_carlo_of(const ReportArguments& arguments) {
+  const unsigned cores = std::max(1U, std::thread::hardware_concurrency());
+  return {arguments.draws, arguments.seed, arguments.threads == 0 ? cores : arguments.threads,
+          cli::progress("drawing")};
+}
+
+// A whole number between two bounds, for an option; the message says what it should be.
+CLI::Validator whole_number(std::uint64_t least, std::uint64_t most) {
+  return {[least, most](std::string& text) {
+            std::uint64_t number = 0;
+            const auto [end, problem] =
+                std::from_chars(text.data(), text.data() + text.size(), number);
+            const bool whole = problem == std::errc() && end == text.data() + text.size();
+            if (whole && number >= least && number <= most) return std::string();
+            return fmt::format("'{}' is not a whole number from {} to {}", text, least, most);
+          },
+          "NUMBER"};
+}
+
 int run_report(ReportArguments arguments, const Library& library) {
   const auto units = display_units(arguments.units);
   if (!units) return fail(units.findings, bad_input);
@@ -134,7 +163,8 @@ int run_report(ReportArguments arguments, const Library& library) {
     if (!assembled.document) return fail(assembled.findings, assembled.status);
     const std::string name = path.empty() ? "--set" : path == "-" ? "standard input" : path;
     auto answered = report(read_recipe(*assembled.document, name), texts, library,
-                           {.strict = arguments.strict});
+                           {arguments.strict, monte_carlo_of(arguments)});
+    if (arguments.draws > 0) cli::end_progress();
     if (!answered) {
       status = fail(answered.findings, bad_input);
       continue;
@@ -175,7 +205,7 @@ int run(int argc, char** argv) {
       ->allow_extra_args(false);
   report_command->add_option("--set", arguments.sets, "set one key: contact.temperature=\"4 degC\"")
       ->allow_extra_args(false);
-  report_command->add_option("--units", arguments.units, "units to display: psi,degF,mg/L")
+  report_command->add_option("--units", arguments.units, "units to display: psi,degF,vol")
       ->delimiter(',')
       ->allow_extra_args(false);
   report_command->add_option("--as", arguments.as, "form of the output")
@@ -183,6 +213,21 @@ int run(int argc, char** argv) {
   report_command->add_option("--out", arguments.out, "write to this file");
   report_command->add_flag("--strict", arguments.strict, "refuse what is outside its range");
   report_command->add_flag("--trace", arguments.trace, "show how each figure came about");
+
+  constexpr std::uint64_t fewest_draws = 1000;
+  constexpr std::uint64_t most_draws = 20'000'000;
+  constexpr std::uint64_t most_seed = std::numeric_limits<std::uint64_t>::max();
+  constexpr std::uint64_t most_threads = 1024;
+  report_command
+      ->add_option("--monte-carlo", arguments.draws,
+                   "draw the doubts so many times, instead of first order")
+      ->check(whole_number(fewest_draws, most_draws));
+  report_command->add_option("--seed", arguments.seed, "seed of the draws (1)")
+      ->check(whole_number(0, most_seed));
+  report_command
+      ->add_option("--threads", arguments.threads,
+                   "threads for the draws (all cores); the result is the same")
+      ->check(whole_number(1, most_threads));
 
   std::string name;
   std::string as = "text";

@@ -369,6 +369,27 @@ Rounded rounded(double value, double expanded_uncertainty) {
   return {fixed(value, decimals), fixed(expanded_uncertainty, decimals)};
 }
 
+namespace {
+
+std::string rounded_by(double value, double doubt, double (*direction)(double)) {
+  if (!(doubt > 0)) return significant(value, kUncertaintyDigits + 2);
+  const int decimals = decimals_for(doubt, kUncertaintyDigits);
+  const double step = std::pow(10.0, -decimals);
+  // What is a multiple already, but for the last bits, stays.
+  constexpr double slack = 1e-9;
+  return fixed(direction(value / step + (direction(0.5) > 0 ? -slack : slack)) * step, decimals);
+}
+
+}  // namespace
+
+std::string rounded_up(double value, double doubt) {
+  return rounded_by(value, doubt, [](double x) { return std::ceil(x); });
+}
+
+std::string rounded_down(double value, double doubt) {
+  return rounded_by(value, doubt, [](double x) { return std::floor(x); });
+}
+
 std::string significant(double value, int digits) {
   if (value == 0) return fixed(0, digits - 1);
   const double magnitude = std::abs(value);

@@ -36,6 +36,7 @@ class Reader {
     read_target(top);
     read_container(top);
     read_opening(top);
+    read_judging(top);
     top.finish();
     recipe_.readable = !has_error(findings_);
     return {std::move(recipe_), std::move(findings_)};
@@ -171,6 +172,18 @@ class Reader {
     opening.temperature = s.temperature("temperature", "8 degC");
     s.finish();
     recipe_.opening = std::move(opening);
+  }
+
+  void read_judging(Section& top) {
+    const Node* node = table(top, "judging");
+    if (node == nullptr) return;
+    Section s = section(*node, "judging");
+    JudgingSection judging;
+    judging.place = node->place;
+    judging.rule = s.text("rule", "guarded");
+    judging.risk = s.share("risk", "5 %", recipe_detail::Sign::positive);
+    s.finish();
+    recipe_.judging = std::move(judging);
   }
 
   const Node& document_;

@@ -88,6 +88,15 @@ std::optional<ParsedQuantity> Section::quantity(const Member& member,
              shown);
     return std::nullopt;
   }
+  if (sign != Sign::any && q.plus_minus && *q.plus_minus > q.value) {
+    const std::size_t sign_at = node.text.find("±");
+    const std::size_t offset = sign_at == std::string::npos ? node.text.find('+') : sign_at;
+    complain(place_inside(node, offset, node.text.size() - offset), "plus-minus-too-large",
+             fmt::format("'{}': the ± is larger than the value, which cannot be below zero",
+                         full_key(member.key)),
+             "a limit of error smaller than the value", shown);
+    return std::nullopt;
+  }
   recipe_.inputs.emplace_back(full_key(member.key), node.text);
   return q;
 }
@@ -157,12 +166,13 @@ std::optional<GivenPressure> Section::pressure(const std::string& key, std::stri
   if (q->plus_minus) g.plus_minus = from_si<Pressure>(*q->plus_minus);
   if (q->reference == Reference::gauge) {
     g.value = from_si<GaugePressure>(q->value);
-  } else if (q->value > 0) {
+  } else if (q->value > q->plus_minus.value_or(0)) {
     g.value = from_si<Pressure>(q->value);
   } else {
     complain(member->value.place, "impossible-value",
              fmt::format("'{}' cannot be \"{}\"", full_key(key), member->value.text),
-             "an absolute pressure above zero", fmt::format("{} = \"{}\"", key, example));
+             "an absolute pressure above zero, also at the lower end of its ±",
+             fmt::format("{} = \"{}\"", key, example));
   }
   return g;
 }

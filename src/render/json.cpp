@@ -1,5 +1,6 @@
 #include <algorithm>
 #include <cctype>
+#include <cmath>
 #include <nlohmann/json.hpp>
 
 #include "capsigh/quantity/grammar.hpp"
@@ -38,7 +39,13 @@ Json quantity(const Figure<Q>& figure, const JsonUnit& unit) {
   q["value"] = for_machines(in_unit(si_value(figure.value), in));
   q["unit"] = unit.ucum;
   const double u = difference_in_unit(si_value(figure.u), in);
-  if (u > 0) q["u"] = doubt_for_machines(u);
+  if (u > 0 && figure.doubt_known) q["u"] = doubt_for_machines(u);
+  if (figure.nonlinear) q["nonlinear"] = true;
+  if (figure.low && figure.high) {
+    q["low"] = for_machines(in_unit(si_value(*figure.low), in));
+    q["high"] = for_machines(in_unit(si_value(*figure.high), in));
+    q["u_first_order"] = doubt_for_machines(difference_in_unit(si_value(figure.u_first), in));
+  }
   return q;
 }
 
@@ -58,6 +65,39 @@ Json budget(const std::vector<BudgetLine>& lines) {
                    {"share", doubt_for_machines(line.share)},
                    {"contribution", doubt_for_machines(line.contribution)}});
   }
+  return out;
+}
+
+// Which limit of error would do; null where nothing need be done.
+Json advice(const Advice& a) {
+  if (a.by == Advice::By::nothing) return nullptr;
+  Json out{{"possible", a.by != Advice::By::none}, {"improvements", Json::array()}};
+  for (const auto& i : a.improvements) {
+    out["improvements"].push_back(
+        {{"input", i.input},
+         {"now", {{"value", doubt_for_machines(i.now)}, {"unit", i.unit}}},
+         {"needed", {{"value", doubt_for_machines(i.needed)}, {"unit", i.unit}}}});
+  }
+  return out;
+}
+
+// The measured values that are accepted; an open end is left out.
+Json acceptance(const JudgedTarget& t) {
+  const Unit in{t.unit.ucum, Dimension::fraction, t.unit.factor, t.unit.offset, Reference::none};
+  Json out{{"empty", t.zone.empty}};
+  const auto put = [&](const char* key, double si, bool difference) {
+    const double number = difference ? difference_in_unit(si, in) : in_unit(si, in);
+    if (std::isfinite(number))
+      out[key] = {{"value", doubt_for_machines(number)}, {"unit", in.text}};
+  };
+  if (t.zone.empty) {
+    out["best_probability"] = doubt_for_machines(t.zone.best_probability);
+    put("u_to_open", t.zone.u_to_open, true);
+    return out;
+  }
+  put("low", t.zone.values.low, false);
+  put("high", t.zone.values.high, false);
+  put("guard_band", t.zone.guard_band, true);
   return out;
 }
 
@@ -105,6 +145,10 @@ Json one(const Report& report, bool with_trace) {
                                                         : "undecided";
     target["probability"] = doubt_for_machines(t.probability);
     target["wish"] = t.wish;
+    target["rule"] = t.guarded ? "guarded" : "simple";
+    target["acceptance"] = acceptance(t);
+    const auto better = advice(t.advice);
+    if (!better.is_null()) target["advice"] = better;
   }
   j["relation"] = report.relation;
   j["second_opinion"] = Json::array();
@@ -116,6 +160,13 @@ Json one(const Report& report, bool with_trace) {
          {"difference", {{"value", doubt_for_machines(o.difference)}, {"unit", "%"}}}});
   }
   j["budget"] = budget(report.budget);
+  if (report.monte_carlo) {
+    const auto& run = *report.monte_carlo;
+    j["monte_carlo"] = {{"draws", run.draws},
+                        {"seed", run.seed},
+                        {"unanswered", run.unanswered},
+                        {"coverage", run.coverage}};
+  }
   j["doubt_not_stated"] = report.doubt_not_stated;
   j["cautions"] = findings(report.cautions);
   j["assumptions"] = findings(report.assumptions);

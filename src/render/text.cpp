@@ -4,34 +4,22 @@
 
 #include "capsigh/quantity/grammar.hpp"
 #include "capsigh/render/render.hpp"
-#include "wrap.hpp"
+#include "text_page.hpp"
 
 namespace capsigh {
 namespace {
 
 using render_detail::padded;
 using render_detail::printable;
+using render_detail::shown;
+using render_detail::TextPage;
+using render_detail::unit;
 using render_detail::wrapped;
-
-constexpr std::size_t kLabel = 30;
-constexpr double kCoverage = 2;  // U = k u, k = 2 (JCGM 100, 6.2)
-
-const Unit& unit(std::string_view name, Dimension dimension) { return *find_unit(name, dimension); }
-
-// "1.58 ± 0.04 bar gauge"
-template <class Q>
-std::string shown(const Figure<Q>& figure, const Unit& in, std::string_view suffix = "") {
-  const double value = in_unit(si_value(figure.value), in);
-  const double expanded = kCoverage * difference_in_unit(si_value(figure.u), in);
-  const auto [number, plus_minus] = rounded(value, expanded);
-  return fmt::format("{}{}{} {}{}", number, plus_minus.empty() ? "" : " ± ", plus_minus, in.text,
-                     suffix);
-}
 
 class TextReport {
  public:
   TextReport(const Report& report, const TextOptions& options)
-      : r_(report), a_(report.answer), options_(options) {}
+      : r_(report), a_(report.answer), options_(options), page_(options.units) {}
 
   std::string write() {
     heading();
@@ -40,106 +28,61 @@ class TextReport {
     condition();
     container();
     opening();
+    page_.doubts(r_);
+    page_.drawn(r_);
     if (options_.with_trace) trace();
     notes();
     sources();
     audit();
-    return std::move(out_);
+    return std::move(page_.out);
   }
 
  private:
-  // The units asked for of that dimension, else our own choice.
-  [[nodiscard]] std::vector<const Unit*> units(Dimension dimension, std::string_view own) const {
-    std::vector<const Unit*> asked;
-    for (const auto* u : options_.units) {
-      if (u->dimension == dimension) asked.push_back(u);
-    }
-    if (asked.empty()) asked.push_back(find_unit(own, dimension));
-    return asked;
-  }
-
-  template <class Q>
-  [[nodiscard]] std::string in_units(const Figure<Q>& figure, Dimension dimension,
-                                     std::string_view own, std::string_view suffix = "") const {
-    std::string text;
-    for (const auto* u : units(dimension, own)) {
-      if (!text.empty()) text += " = ";
-      text += shown(figure, *u, suffix);
-    }
-    return text;
-  }
-
-  [[nodiscard]] std::string celsius(const Figure<Temperature>& t) const {
-    return in_units(t, Dimension::temperature, "°C");
-  }
-
-  void pressures(std::string_view label, const Figure<GaugePressure>& gauge,
-                 const Figure<Pressure>& absolute) {
-    line(label, in_units(gauge, Dimension::pressure, "bar", " gauge"),
-         in_units(absolute, Dimension::pressure, "bar", " abs"));
-  }
-
-  void line(std::string_view label, const std::string& value, const std::string& more = "") {
-    constexpr std::size_t page = 80;
-    constexpr std::size_t column = 24;
-    std::string row = "  " + padded(label, kLabel);
-    if (render_detail::columns(label) >= kLabel) row += ' ';
-    const std::string both = row + padded(value, column) + "  " + more;
-    if (more.empty()) {
-      out_ += row + value + "\n";
-    } else if (render_detail::columns(both) <= page) {
-      out_ += both + "\n";
-    } else {
-      out_ += row + value + "\n" + std::string(kLabel + 2, ' ') + more + "\n";
-    }
-  }
-
-  void section(std::string_view name) { out_ += fmt::format("\n{}\n", name); }
-
   void heading() {
-    out_ += r_.title.empty() ? "Untitled recipe\n" : printable(r_.title) + "\n";
+    page_.out += r_.title.empty() ? "Untitled recipe\n" : printable(r_.title) + "\n";
     for (const auto& [key, text] : r_.about)
-      out_ += wrapped("  " + printable(key) + ": ", printable(text));
-    out_ += wrapped("  ", fmt::format("{} under {}. Figures are value ± U, expanded uncertainty, "
-                                      "k = 2. A content is per litre of degassed liquid at 20 °C; "
-                                      "vol is real gas at 0 °C and 1 atm.",
-                                      r_.liquid, fmt::format("{}", fmt::join(r_.gases, ", "))));
+      page_.out += wrapped("  " + printable(key) + ": ", printable(text));
+    page_.out +=
+        wrapped("  ", fmt::format("{} under {}. Figures are value ± U, expanded uncertainty, "
+                                  "k = 2. A content is per litre of degassed liquid at 20 °C; "
+                                  "vol is real gas at 0 °C and 1 atm.",
+                                  r_.liquid, fmt::format("{}", fmt::join(r_.gases, ", "))));
   }
 
   // What was asked, in the recipe's own words.
   void asked() {
-    section("Asked");
+    page_.section("Asked");
     for (const auto& [key, text] : r_.audit.inputs) {
-      const bool given = key.starts_with("contact.") || key.starts_with("target.") ||
-                         key.starts_with("container.") || key.starts_with("opening.") ||
-                         key.starts_with("liquid.") || key.starts_with("gas.");
-      if (given) out_ += wrapped("  " + padded(printable(key), 38), printable(text));
+      if (key != "title" && !key.starts_with("about."))
+        page_.out += wrapped("  " + padded(printable(key), 38), printable(text));
     }
   }
 
   // The answer first; how it came about stands below.
   void answer() {
-    section("Answer");
+    page_.section("Answer");
     for (const auto& b : a_.blend) {
-      line(fmt::format("{} in the gas", b.gas), in_units(b.share, Dimension::fraction, "%"));
+      page_.line(fmt::format("{} in the gas", b.gas),
+                 page_.in_units(b.share, Dimension::fraction, "%"));
     }
-    if (r_.solved_for_temperature) line("Temperature needed", celsius(a_.temperature));
+    if (r_.solved_for_temperature) page_.line("Temperature needed", page_.celsius(a_.temperature));
     if (r_.solved_for_pressure)
-      pressures("Pressure needed", a_.pressure_gauge, a_.pressure_absolute);
+      page_.pressures("Pressure needed", a_.pressure_gauge, a_.pressure_absolute);
     if (!r_.solved_for_temperature && !r_.solved_for_pressure) {
-      for (const auto& g : a_.gases) gas(g);
+      for (const auto& g : a_.gases) page_.gas(g);
     }
     if (!r_.solved_for_pressure && a_.blend.empty()) saturation();
     for (const auto& c : a_.container) {
-      pressures("In the closed package", c.pressure_gauge, c.pressure_absolute);
+      page_.pressures("In the closed package", c.pressure_gauge, c.pressure_absolute);
       rating(c.margin, c.temperature);
     }
     if (a_.opening_pressure.asked && differs_from_container(a_.opening_temperature)) {
-      line("  when opened", in_units(a_.opening_pressure, Dimension::pressure, "bar", " gauge"),
-           "at " + celsius(a_.opening_temperature));
+      page_.line("  when opened",
+                 page_.in_units(a_.opening_pressure, Dimension::pressure, "bar", " gauge"),
+                 "at " + page_.celsius(a_.opening_temperature));
       rating(a_.opening_margin, a_.opening_temperature);
     }
-    for (const auto& j : r_.judged) judged(j);
+    for (const auto& j : r_.judged) page_.judged(j);
     opinions();
   }
 
@@ -151,61 +94,47 @@ class TextReport {
   void rating(const Figure<Pressure>& margin, const Figure<Temperature>& at) {
     if (!margin.asked) return;
     const bool above = margin.value.value() < 0;
-    line(above ? "  ABOVE ITS RATING, margin" : "  below its rating by",
-         in_units(margin, Dimension::pressure, "bar"), "at " + celsius(at));
-  }
-
-  void judged(const JudgedTarget& j) {
-    const std::string_view verdict = j.verdict == Verdict::inside    ? "inside"
-                                     : j.verdict == Verdict::outside ? "OUTSIDE"
-                                                                     : "UNDECIDED";
-    constexpr double percent = 100;
-    line(fmt::format("{} against {}", j.gas, j.wish), std::string(verdict),
-         j.doubt_stated ? fmt::format("probability of conformity {:.1f} %", percent * j.probability)
-                        : std::string("values compared, no doubt stated"));
+    page_.line(above ? "  ABOVE ITS RATING, margin" : "  below its rating by",
+               page_.in_units(margin, Dimension::pressure, "bar"), "at " + page_.celsius(at));
   }
 
   void condition() {
-    section("Where liquid and gas meet");
-    line("Temperature", celsius(a_.temperature));
-    pressures("Pressure", a_.pressure_gauge, a_.pressure_absolute);
-    line("Ambient pressure", in_units(a_.ambient, Dimension::pressure, "hPa", " abs"));
-    line("Vapour of water", in_units(a_.vapour, Dimension::pressure, "kPa"));
+    page_.section("Where liquid and gas meet");
+    page_.line("Temperature", page_.celsius(a_.temperature));
+    page_.pressures("Pressure", a_.pressure_gauge, a_.pressure_absolute);
+    page_.line("Ambient pressure", page_.in_units(a_.ambient, Dimension::pressure, "hPa", " abs"));
+    page_.line("Vapour of water", page_.in_units(a_.vapour, Dimension::pressure, "kPa"));
     if (a_.ethanol.asked) {
-      line("Vapour of ethanol", in_units(a_.ethanol, Dimension::pressure, "kPa"));
+      page_.line("Vapour of ethanol", page_.in_units(a_.ethanol, Dimension::pressure, "kPa"));
     }
     for (const auto& g : a_.gases) {
-      line(fmt::format("Partial pressure of {}", g.gas),
-           in_units(g.partial_pressure, Dimension::pressure, "bar"));
+      page_.line(fmt::format("Partial pressure of {}", g.gas),
+                 page_.in_units(g.partial_pressure, Dimension::pressure, "bar"));
     }
-    for (const auto& g : a_.gases) gas(g);
+    for (const auto& g : a_.gases) page_.gas(g);
   }
 
   // What the figures in the report are, and what they would be by another reading.
   void opinions() {
     if (r_.relation == "composition" && r_.second_opinion.empty()) return;
-    line("CO2 is read here", basis_text(r_.relation));
+    page_.line("CO2 is read here", basis_text(r_.relation));
     for (const auto& o : r_.second_opinion) opinion(o);
   }
 
   void opinion(const SecondOpinion& o) {
-    const bool pressure = o.unit.ucum == json_unit::kilopascal.ucum;
+    const auto [dimension, own] = TextPage::shown_as(o.unit);
+    const bool pressure = dimension == Dimension::pressure;
     const double si = o.value * o.unit.factor + o.unit.offset;
-    const auto dimension = pressure                                 ? Dimension::pressure
-                           : o.unit.ucum == json_unit::celsius.ucum ? Dimension::temperature
-                           : o.unit.ucum == json_unit::percent.ucum ? Dimension::fraction
-                                                                    : Dimension::gas_volumes;
-    const std::string_view own = pressure                              ? "bar"
-                                 : dimension == Dimension::temperature ? "°C"
-                                 : dimension == Dimension::fraction    ? "%"
-                                                                       : "vol";
     std::string value;
-    for (const auto* u : units(dimension, own)) {
+    for (const auto* u : page_.units(dimension, own)) {
       if (!value.empty()) value += " = ";
       value += fmt::format("{} {}{}", significant(in_unit(si, *u), 4), u->text,
                            pressure ? " gauge" : "");
     }
-    line("  " + basis_text(o.relation), value, fmt::format("{:+.1f} %", o.difference));
+    if (!o.quantity.starts_with("dissolved.")) value += " needed";
+    const std::string basis =
+        o.relation == "water" ? "as tested, as water" : basis_text(o.relation);
+    page_.line("  " + basis, value, fmt::format("{:+.1f} %", o.difference));
   }
 
   static std::string basis_text(const std::string& relation) {
@@ -217,47 +146,36 @@ class TextReport {
     return "as tested, by " + name;
   }
 
-  // Gases that are there in traces are read in mg/L; volumes would be a row of zeros.
-  void gas(const GasFigures& g) {
-    constexpr double trace = 0.1;
-    const std::string label = fmt::format("Dissolved {}", g.gas);
-    if (g.mass_concentration.value.value() < trace) {
-      line(label, in_units(g.mass_concentration, Dimension::mass_concentration, "mg/L"));
-      return;
-    }
-    line(label, shown(g.volumes, unit("vol", Dimension::gas_volumes)),
-         in_units(g.mass_concentration, Dimension::mass_concentration, "g/L"));
-  }
-
   void saturation() {
     for (std::size_t i = 0; i < a_.saturation.size(); ++i) {
       const auto& s = a_.saturation[i];
       const std::string content = i < r_.targets.size() ? r_.targets[i].second : "";
       const std::string label = fmt::format("{} of {} needs", content, s.gas);
-      if (s.unreachable) line(label, "nothing brings it, see cautions");
-      if (s.pressure_gauge.asked) pressures(label, s.pressure_gauge, s.pressure_absolute);
-      if (s.temperature.asked && !r_.solved_for_temperature) line(label, celsius(s.temperature));
+      if (s.unreachable) page_.line(label, "nothing brings it, see cautions");
+      if (s.pressure_gauge.asked) page_.pressures(label, s.pressure_gauge, s.pressure_absolute);
+      if (s.temperature.asked && !r_.solved_for_temperature)
+        page_.line(label, page_.celsius(s.temperature));
     }
   }
 
   void container() {
     if (a_.container.empty()) return;
-    section("In the closed package, at equilibrium");
+    page_.section("In the closed package, at equilibrium");
     for (const auto& c : a_.container) {
-      line("Temperature", celsius(c.temperature));
-      pressures("Pressure", c.pressure_gauge, c.pressure_absolute);
-      line("Ullage", shown(c.ullage, unit("%", Dimension::fraction), " of brimful"));
-      for (const auto& g : c.gases) gas(g);
+      page_.line("Temperature", page_.celsius(c.temperature));
+      page_.pressures("Pressure", c.pressure_gauge, c.pressure_absolute);
+      page_.line("Ullage", shown(c.ullage, unit("%", Dimension::fraction), " of brimful"));
+      for (const auto& g : c.gases) page_.gas(g);
     }
   }
 
   void opening() {
     if (a_.opening.empty()) return;
-    const auto at = celsius(a_.opening_temperature);
-    section(fmt::format("Lost on opening at {}, each on top of the one before", at));
+    const auto at = page_.celsius(a_.opening_temperature);
+    page_.section(fmt::format("Lost on opening at {}, each on top of the one before", at));
     for (const auto& loss : a_.opening) {
       const bool co2 = loss.gas.empty();
-      const auto& in = co2 ? unit("g", Dimension::mass) : unit("mg", Dimension::mass);
+      const std::string_view in = co2 ? "g" : "mg";
       const std::string name = co2 ? "CO2" : std::string(loss.gas);
       if (!a_.container.empty()) loss_line(name + " from the headspace", loss.headspace_loss, in);
       loss_line(name + " as fizz", loss.fizz_loss, in);
@@ -266,37 +184,38 @@ class TextReport {
   }
 
   // A gas other than CO2 that has nothing to lose needs no line.
-  void loss_line(const std::string& label, const Figure<Mass>& loss, const Unit& in) {
+  void loss_line(const std::string& label, const Figure<Mass>& loss, std::string_view in) {
     const bool silent = !label.starts_with("CO2") && loss.value.value() == 0;
-    if (loss.asked && !silent) line(label, shown(loss, in));
+    if (loss.asked && !silent) page_.line(label, page_.in_units(loss, Dimension::mass, in));
   }
 
   void trace() {
     for (const auto& chain : r_.trace.chains) {
-      section(fmt::format("How {} came about", chain.figure));
+      page_.section(fmt::format("How {} came about", chain.figure));
       for (const auto& step : chain.steps) trace_step(step);
     }
   }
 
   void trace_step(const TraceStep& step) {
     constexpr int digits = 6;
-    out_ += wrapped("  ", fmt::format("{}: {} = {} {}", step.law, step.result.symbol,
-                                      significant(step.result.value, digits), step.result.unit));
+    page_.out +=
+        wrapped("  ", fmt::format("{}: {} = {} {}", step.law, step.result.symbol,
+                                  significant(step.result.value, digits), step.result.unit));
     if (!step.inputs.empty()) {
       std::string inputs;
       for (const auto& in : step.inputs) {
         if (!inputs.empty()) inputs += ", ";
         inputs += fmt::format("{} = {} {}", in.symbol, significant(in.value, digits), in.unit);
       }
-      out_ += wrapped("      from ", inputs);
+      page_.out += wrapped("      from ", inputs);
     }
     if (step.inputs.size() > 1 || step.record != nullptr) {
-      out_ += wrapped("      by   ", step.equation);
+      page_.out += wrapped("      by   ", step.equation);
     }
     if (step.record != nullptr) {
-      out_ += wrapped("      rec  ", fmt::format("{}, u {} [{}]", step.record->key,
-                                                 step.record->uncertainty.printed,
-                                                 source_number(step.record->source)));
+      page_.out += wrapped("      rec  ", fmt::format("{}, u {} [{}]", step.record->key,
+                                                      step.record->uncertainty.printed,
+                                                      source_number(step.record->source)));
     }
   }
 
@@ -307,35 +226,35 @@ class TextReport {
   }
 
   void notes() {
-    if (!r_.cautions.empty()) section("Cautions");
-    for (const auto& c : r_.cautions) out_ += wrapped("  ! ", c.message);
-    if (!r_.assumptions.empty() || !r_.doubt_not_stated.empty()) section("Assumed");
-    for (const auto& a : r_.assumptions) out_ += wrapped("  - ", a.message);
+    if (!r_.cautions.empty()) page_.section("Cautions");
+    for (const auto& c : r_.cautions) page_.out += wrapped("  ! ", c.message);
+    if (!r_.assumptions.empty() || !r_.doubt_not_stated.empty()) page_.section("Assumed");
+    for (const auto& a : r_.assumptions) page_.out += wrapped("  - ", a.message);
     if (!r_.doubt_not_stated.empty()) {
-      out_ += wrapped("  - ", fmt::format("doubt not stated, taken as exact: {}",
-                                          fmt::join(r_.doubt_not_stated, ", ")));
+      page_.out += wrapped("  - ", fmt::format("doubt not stated, taken as exact: {}",
+                                               fmt::join(r_.doubt_not_stated, ", ")));
     }
   }
 
   void sources() {
-    section("Sources");
+    page_.section("Sources");
     for (std::size_t i = 0; i < r_.sources.size(); ++i) {
-      out_ += wrapped(fmt::format("  [{}] ", i + 1), r_.sources[i].citation);
+      page_.out += wrapped(fmt::format("  [{}] ", i + 1), r_.sources[i].citation);
     }
   }
 
   void audit() {
-    section("Audit");
-    out_ += fmt::format("  {} {}\n", r_.audit.program, r_.audit.version);
-    out_ += fmt::format("  recipe    {}\n  constants {}\n", r_.audit.recipe_digest,
-                        r_.audit.constants_digest);
-    out_ += "  inputs as understood: under Asked\n";
+    page_.section("Audit");
+    page_.out += fmt::format("  {} {}\n", r_.audit.program, r_.audit.version);
+    page_.out += fmt::format("  recipe    {}\n  constants {}\n", r_.audit.recipe_digest,
+                             r_.audit.constants_digest);
+    page_.out += "  inputs as understood: under Asked\n";
   }
 
   const Report& r_;
   const Answer& a_;
   const TextOptions& options_;
-  std::string out_;
+  TextPage page_;
 };
 
 }  // namespace

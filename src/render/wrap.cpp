@@ -1,12 +1,15 @@
 #include "wrap.hpp"
 
+#include <algorithm>
+
 #include "capsigh/document/document.hpp"
 
 namespace capsigh::render_detail {
 
 namespace {
 constexpr std::size_t kPage = 80;
-}
+constexpr char kKeptSpace = '\x1f';
+}  // namespace
 
 std::string printable(std::string_view text) {
   const bool whole = is_utf8(text);
@@ -50,6 +53,7 @@ std::string wrapped(std::string_view head, std::string_view text) {
     }
     if (!empty) line += ' ';
     line += word;
+    std::replace(line.begin(), line.end(), kKeptSpace, ' ');
     empty = false;
   }
   return out + line + "\n";

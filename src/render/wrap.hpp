@@ -7,7 +7,7 @@
 namespace capsigh::render_detail {
 
 /// Text broken at spaces so that no line exceeds 80 columns; the first line starts with `head`,
-/// following ones with as many spaces.
+/// following ones with as many spaces. The control character \x1f is a space that is not broken at.
 std::string wrapped(std::string_view head, std::string_view text);
 
 /// The number of columns a UTF-8 text takes (one a code point).

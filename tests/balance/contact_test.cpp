@@ -94,7 +94,7 @@ TEST_CASE("strict turns a caution into a refusal") {
   const std::string text = "[contact]\ntemperature = \"4 degC\"\npressure = \"12 bar gauge\"\n";
   const auto document = parse_document(text, "t.toml");
   const auto strict =
-      report(read_recipe(*document, "t.toml"), text, built_in_library(), {.strict = true});
+      report(read_recipe(*document, "t.toml"), text, built_in_library(), {true, {}});
   CHECK_FALSE(strict);
   REQUIRE(strict.findings.size() == 1);
   CHECK(strict.findings[0].severity == Severity::error);

@@ -113,6 +113,20 @@ with tempfile.TemporaryDirectory() as scratch:
                  stdin=b'[contact]\ntemperature = "4 degC"\npressure = "1 bar gauge"\n')
     check("--with lies under the recipe", abs(json.loads(shared.stdout)["condition"]["ambient"]["value"] - 97.19) < 0.01)
     hot = b'[contact]\ntemperature = "4 degC"\npressure = "12 bar gauge"\n'
+    for option, bad in (("--seed", "abc"), ("--seed", "-1"), ("--seed", "1.5"), ("--monte-carlo", "many"),
+                        ("--monte-carlo", "10"), ("--monte-carlo", "1e6"), ("--threads", "0")):
+        done = run("report", "-", option, bad, stdin=can)
+        check(f"{option} {bad} exits 2", done.returncode == 2 and b"whole number" in done.stderr, done)
+    drawn = [run("report", "-", "--as", "json", "--monte-carlo", "3000", "--seed", seed, "--threads", threads,
+                 stdin=can).stdout for seed, threads in (("7", "1"), ("7", "3"), ("8", "1"))]
+    check("threads do not change what is drawn, the seed does", drawn[0] == drawn[1] != drawn[2])
+    volumes = json.loads(drawn[0])["dissolved"]["CO2"]["volumes"]
+    check("a drawn figure has its interval", volumes["low"] < volumes["value"] < volumes["high"]
+          and abs(volumes["u"] / volumes["u_first_order"] - 1) < 0.1)
+    check("a run without a terminal shows no progress",
+          not run("report", "-", "--monte-carlo", "3000", stdin=can).stderr)
+    contents = run("report", "-", "--units", "g/L,vol,mg", stdin=can)
+    check("--units chooses the measure of contents", b" g/L = " in contents.stdout and b" mg\n" in contents.stdout)
     check("a caution alone exits 0", run("report", "-", stdin=hot).returncode == 0)
     check("--strict exits 2", run("report", "-", "--strict", stdin=hot).returncode == 2)
 

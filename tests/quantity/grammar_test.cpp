@@ -118,3 +118,13 @@ TEST_CASE("numbers are printed without surprises") {
   CHECK(for_machines(0.1 + 0.2) == 0.3);
   CHECK(for_machines(-0.0) == 0);
 }
+
+TEST_CASE("limits are rounded so that they never widen") {
+  CHECK(rounded_up(3.67912, 0.0813) == "3.680");
+  CHECK(rounded_down(3.72088, 0.0813) == "3.720");
+  CHECK(rounded_up(3.68, 0.081) == "3.680");
+  CHECK(rounded_down(3.68, 0.081) == "3.680");
+  CHECK(rounded_down(0.1466, 0.1466) == "0.14");
+  CHECK(rounded_up(1234.5, 230) == "1240");
+  CHECK(rounded_down(-1.2345, 0.11) == "-1.24");
+}

@@ -20,6 +20,11 @@ struct Figure {
   Q value{};
   Difference<Q> u{};
   bool asked = false;
+  bool nonlinear = false;   ///< not in proportion to its doubts: first order is not the whole of u
+  bool doubt_known = true;  ///< false where too many draws of a Monte Carlo had no answer
+  std::optional<Q> low{};   ///< ends of the coverage interval of a Monte Carlo
+  std::optional<Q> high{};
+  Difference<Q> u_first{};  ///< with a Monte Carlo: u by first order, beside it
 
   Figure& operator=(const Q& q) {
     value = q;
@@ -65,6 +70,12 @@ struct GasFigures {
   Figure<Fraction> mass_fraction;
   Figure<Pressure> partial_pressure;
 };
+
+/// Whether so little of a gas is there that it is read in mg/L: volumes would be a row of zeros.
+inline bool is_trace(const GasFigures& g) {
+  constexpr double trace = 0.1;  // kg/m3
+  return g.mass_concentration.value.value() < trace;
+}
 
 struct SaturationFigures {
   std::string_view gas;
@@ -124,6 +135,7 @@ inline constexpr JsonUnit mole_per_litre{"mol/L", 1e3};
 inline constexpr JsonUnit one{"1", 1};
 inline constexpr JsonUnit percent{"%", 1e-2};
 inline constexpr JsonUnit milligram_per_kilogram{"mg/kg", 1e-6};
+inline constexpr JsonUnit mole_per_kilogram{"mol/kg", 1};
 inline constexpr JsonUnit gram{"g", 1e-3};
 }  // namespace json_unit
 

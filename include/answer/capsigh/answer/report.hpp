@@ -5,16 +5,19 @@
 #include <utility>
 #include <vector>
 
+#include "capsigh/answer/advice.hpp"
 #include "capsigh/answer/bind.hpp"
 #include "capsigh/answer/doubt.hpp"
 #include "capsigh/answer/figures.hpp"
+#include "capsigh/answer/monte_carlo.hpp"
 #include "capsigh/answer/second_opinion.hpp"
 #include "capsigh/quality/verdict.hpp"
 
 namespace capsigh {
 
 struct ReportOptions {
-  bool strict = false;  ///< a caution about a range is an error
+  bool strict = false;            ///< a caution about a range is an error
+  MonteCarloOptions monte_carlo;  ///< without draws: first order alone
 };
 
 struct CitedSource {
@@ -37,6 +40,19 @@ struct JudgedTarget {
   Verdict verdict = Verdict::undecided;
   double probability = 0;  ///< of conformity
   bool doubt_stated = true;
+  bool guarded = true;  ///< else values are compared
+  ContentMeasure measure = ContentMeasure::volumes;
+  JsonUnit unit;        ///< of the measure, as machines read it
+  AcceptanceZone zone;  ///< in SI units of the measure
+  Advice advice;        ///< what would open an empty zone, or decide an undecided value
+};
+
+/// Where the doubt of a figure that answers the question comes from, and what would halve it.
+struct MainDoubt {
+  std::string of;                 ///< path of the figure
+  std::vector<BudgetLine> lines;  ///< largest share first
+  Advice to_halve;
+  bool nonlinear = false;
 };
 
 struct Report {
@@ -53,6 +69,8 @@ struct Report {
   std::vector<JudgedTarget> judged;
   std::vector<SecondOpinion> second_opinion;
   std::vector<BudgetLine> budget;
+  std::vector<MainDoubt> main_doubts;
+  std::optional<MonteCarloRun> monte_carlo;
   std::vector<std::string> doubt_not_stated;
   Findings assumptions;
   Findings cautions;

@@ -97,6 +97,11 @@ struct Rounded {
 };
 Rounded rounded(double value, double expanded_uncertainty);
 
+/// A value at the decimals of two significant digits of `doubt`, rounded up or down: for limits
+/// that must not widen. Without doubt: four significant digits.
+std::string rounded_up(double value, double doubt);
+std::string rounded_down(double value, double doubt);
+
 /// A number with that many significant digits, trailing zeros kept, never "-0".
 std::string significant(double value, int digits);
 /// The shortest text that reads back as the same number.

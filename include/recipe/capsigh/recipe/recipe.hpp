@@ -128,6 +128,13 @@ struct OpeningSection {
   std::optional<Given<Temperature>> temperature;
 };
 
+/// How targets and limits are judged.
+struct JudgingSection {
+  Place place;
+  std::optional<LocatedText> rule;  ///< "guarded" or "simple"
+  std::optional<Given<Fraction>> risk;
+};
+
 struct Recipe {
   std::string file;
   bool readable = true;  ///< false if some value could not be read; it still counts as given
@@ -141,6 +148,7 @@ struct Recipe {
   std::optional<LocatedText> target_at;  ///< "contact" or "package"
   std::optional<ContainerSection> container;
   std::optional<OpeningSection> opening;
+  std::optional<JudgingSection> judging;
   std::vector<std::pair<std::string, std::string>> inputs;  ///< as understood: key and text
 };
 

@@ -1,0 +1,96 @@
+#include "words.hpp"
+
+#include <fmt/format.h>
+
+#include <array>
+#include <vector>
+
+#include "capsigh/quantity/grammar.hpp"
+
+namespace capsigh::render_detail {
+namespace {
+
+// The unit in which a limit of error is spoken of.
+const Unit* spoken_unit(std::string_view si_unit, std::string_view key) {
+  struct Spoken {
+    std::string_view si;
+    std::string_view unit;
+    Dimension dimension;
+  };
+  static constexpr std::array table{
+      Spoken{"K", "K", Dimension::temperature_difference},
+      Spoken{"Pa", "bar", Dimension::pressure},
+      Spoken{"m3", "mL", Dimension::volume},
+      Spoken{"m", "m", Dimension::length},
+      Spoken{"kg", "g", Dimension::mass},
+      Spoken{"kg/m3", "g/L", Dimension::mass_concentration},
+  };
+  const bool content = key.find("dissolved") != std::string_view::npos ||
+                       key.find("filling_loss") != std::string_view::npos;
+  if (si_unit == "1") {
+    return content ? find_unit("vol", Dimension::gas_volumes) : find_unit("%", Dimension::fraction);
+  }
+  for (const auto& row : table) {
+    if (row.si == si_unit) return find_unit(row.unit, row.dimension);
+  }
+  return nullptr;
+}
+
+std::string limit_text(double si, std::string_view si_unit, std::string_view key, bool down) {
+  const Unit* unit = spoken_unit(si_unit, key);
+  const double value = unit == nullptr ? si : difference_in_unit(si, *unit);
+  const auto text = down ? rounded_down(value, value) : significant(value, 2);
+  return fmt::format("±\x1f{}\x1f{}", text, unit == nullptr ? si_unit : unit->text);
+}
+
+std::string_view instrument(std::string_view key) {
+  if (key.ends_with("temperature")) return "a thermometer";
+  if (key == "contact.ambient") return "a barometer";
+  if (key.ends_with("pressure")) return "a gauge";
+  return "an input";
+}
+
+}  // namespace
+
+std::string advice_text(const Advice& advice, std::string_view would) {
+  if (advice.by == Advice::By::none) {
+    return fmt::format(
+        "no instrument would {}: with perfect ones {} % of the doubt stays, from "
+        "published constants",
+        would, significant(100 * advice.records_alone, 2));
+  }
+  std::string text;
+  for (const auto& i : advice.improvements) {
+    text += fmt::format("{}{} good to {} ({}, now {})", text.empty() ? "" : " and ",
+                        instrument(i.input), limit_text(i.needed, i.unit, i.input, true), i.input,
+                        limit_text(i.now, i.unit, i.input, false));
+  }
+  const bool together = advice.by == Advice::By::instruments && advice.improvements.size() > 1;
+  return text + (together ? " together would " : " would ") + std::string(would);
+}
+
+std::string shares_text(const std::vector<BudgetLine>& lines) {
+  constexpr double worth_naming = 0.01;
+  std::string text;
+  for (const auto& line : lines) {
+    if (line.share < worth_naming) break;
+    text += fmt::format("{}{} {:.0f}\x1f%", text.empty() ? "" : ", ", line.input, 100 * line.share);
+  }
+  return text;
+}
+
+std::string figure_label(std::string_view path) {
+  const auto between = [&](std::string_view head) {
+    const auto rest = path.substr(head.size());
+    return std::string(rest.substr(0, rest.find('.')));
+  };
+  if (path.starts_with("dissolved.")) return "Dissolved " + between("dissolved.");
+  if (path == "condition.temperature") return "Temperature";
+  if (path == "condition.pressure_gauge") return "Pressure";
+  if (path.starts_with("saturation.")) return "Needed for " + between("saturation.");
+  if (path.starts_with("blend.")) return between("blend.") + " in the gas";
+  if (path.starts_with("container.at.")) return "Pressure in the package";
+  return std::string(path);
+}
+
+}  // namespace capsigh::render_detail
