@@ -77,6 +77,9 @@ class Binder : answer_detail::RecipeCheck {
       const Record& relation = library_.at(part);
       if (&relation != binding_.relation) binding_.other_relations.push_back(&relation);
     }
+    problem().classed_by_gauge = std::find(named_->parts.begin(), named_->parts.end(),
+                                           "relation.oiv") != named_->parts.end();
+    if (problem().classed_by_gauge) cite(library_.at("class.sparkling_wine"));
     describe_liquid();
     question_bicarbonate();
     for (const auto& gas : gases_) {

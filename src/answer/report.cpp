@@ -226,12 +226,19 @@ void explain_doubts(Report& report) {
   }
 }
 
-void describe(const Recipe& recipe, const Binding& binding, Report& report) {
+void describe(const Recipe& recipe, const Binding& binding, const Library& library,
+              Report& report) {
   report.title = recipe.title;
   report.about = recipe.about;
   report.liquid = binding.liquid;
   report.relation = relation_name(binding.relation);
   report.doubt_not_stated = binding.doubt_not_stated;
+  if (binding.problem.classed_by_gauge) {
+    const auto& least = library.at("class.sparkling_wine");
+    const auto& small = library.at("class.sparkling_wine_small");
+    report.wine_class = fmt::format("sparkling from {} (small bottles {})", least.values[0].digits,
+                                    small.values[0].digits);
+  }
   const auto& c = binding.problem;
   for (std::size_t i = 0; i < c.medium.size(); ++i) {
     if (c.in_contact[i] != 0) report.gases.emplace_back(c.medium.gases[i].name);
@@ -267,7 +274,7 @@ Outcome<Report> report(const Outcome<Recipe>& recipe, std::string_view recipe_te
     return {{}, {f}};
   }
   report.answer = std::get<Answer>(solved);
-  describe(*recipe, *binding, report);
+  describe(*recipe, *binding, library, report);
   sort_findings(*binding, report);
   const double widening = library.at("assumed.widening").values[0].value;
   append(report.cautions, judge_ranges(problem, report.trace, widening));

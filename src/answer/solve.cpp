@@ -13,6 +13,9 @@ OrRefusal<Answer> Solver::run() {
   auto refusal = by(AskedBy::contact, solve_contact());
   if (!refusal) refusal = by(AskedBy::saturation, answer_saturation());
   if (!refusal && c_.container) refusal = by(AskedBy::closing, answer_container());
+  if (!refusal && c_.classed_by_gauge && m_.co2 < m_.size()) {
+    refusal = by(AskedBy::closing, answer_wine());
+  }
   if (!refusal && c_.opening) refusal = by(AskedBy::opening, answer_opening());
   if (!refusal) refusal = all_finite();
   if (refusal) return *refusal;

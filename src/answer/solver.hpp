@@ -71,6 +71,9 @@ class Solver {
   void trace_container(const ClosedState& state);
   Molality trace_state(const ClosedState& state);
   Maybe answer_opening();
+  Maybe answer_wine();
+  void trace_wine(Pressure root);
+  void trace_wine(const ClosedState& state);
   Mass litre() const;
   void answer_losses(const Opened& opened, std::size_t gas);
   void trace_losses(const Opened& opened, std::size_t gas, bool bubbles);

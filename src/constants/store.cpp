@@ -29,6 +29,7 @@ constexpr auto kConstantUnits = std::to_array<ConstantUnit>({
     {"%", 1e-2},
     {"Pa", 1},
     {"hPa", 1e2},
+    {"bar", 1e5},
     {"MPa", 1e6},
     {"atm", kAtm},
     {"K", 1},

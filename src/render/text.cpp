@@ -83,6 +83,11 @@ class TextReport {
       rating(a_.opening_margin, a_.opening_temperature);
     }
     for (const auto& j : r_.judged) page_.judged(j);
+    if (a_.wine_gauge.asked) {
+      page_.line("Gauge at 20 °C, for the class",
+                 page_.in_units(a_.wine_gauge, Dimension::pressure, "bar", " gauge"),
+                 r_.wine_class);
+    }
     opinions();
   }
 

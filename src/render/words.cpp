@@ -88,6 +88,7 @@ std::string figure_label(std::string_view path) {
   if (path == "condition.temperature") return "Temperature";
   if (path == "condition.pressure_gauge") return "Pressure";
   if (path.starts_with("saturation.")) return "Needed for " + between("saturation.");
+  if (path == "wine.pressure_gauge") return "Gauge at 20 °C";
   if (path.starts_with("blend.")) return between("blend.") + " in the gas";
   if (path.starts_with("container.at.")) return "Pressure in the package";
   return std::string(path);

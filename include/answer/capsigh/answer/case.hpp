@@ -84,6 +84,7 @@ struct Case {
   bool ideal_volumes = false;
   bool target_at_package = false;  ///< targets hold after the closed package has settled
   Acceleration gravity{};
+  bool classed_by_gauge = false;     ///< a wine: its gauge pressure at 20 °C is asked for
   bool content_from_target = false;  ///< the contact's content is a target's
 };
 

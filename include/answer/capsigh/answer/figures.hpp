@@ -120,6 +120,7 @@ struct Answer {
   PerGas<GasFigures> gases;
   PerGas<SaturationFigures> saturation;
   boost::container::static_vector<ContainerFigures, 8> container;
+  Figure<GaugePressure> wine_gauge;  ///< at 20 °C: what wines are classed by
   Figure<Temperature> opening_temperature;
   Figure<GaugePressure> opening_pressure;  ///< of the package when it is opened
   Figure<Pressure> opening_margin;         ///< rating less that
@@ -189,6 +190,7 @@ void each_figure(A& a, F&& f) {
     f(at.then("headspace").then("partial_pressure").then("ethanol"), c.ethanol, kilopascal);
     detail::each_gas_figure(c.gases, at, f);
   }
+  f(FigurePath("wine", "pressure_gauge"), a.wine_gauge, kilopascal);
   f(FigurePath("opening", "temperature"), a.opening_temperature, celsius);
   f(FigurePath("opening", "pressure_gauge"), a.opening_pressure, kilopascal);
   f(FigurePath("opening", "margin"), a.opening_margin, kilopascal);

@@ -71,6 +71,7 @@ struct Report {
   std::vector<BudgetLine> budget;
   std::vector<MainDoubt> main_doubts;
   std::optional<MonteCarloRun> monte_carlo;
+  std::string wine_class;  ///< what the gauge pressure at 20 °C of a wine is held against
   std::vector<std::string> doubt_not_stated;
   Findings assumptions;
   Findings cautions;
