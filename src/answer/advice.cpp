@@ -31,6 +31,7 @@ Advice advise(const std::vector<BudgetLine>& lines, double wanted) {
   }
   const double records = std::max(all - inputs, 0.0);
   advice.records_alone = std::sqrt(records);
+  advice.inputs_stated = inputs > 0;
   if (all <= goal) return advice;
   // The budget is sorted by share: the first that can do it alone is the least demanding.
   for (const auto& line : lines) {

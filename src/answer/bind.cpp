@@ -110,13 +110,17 @@ class Binder : answer_detail::RecipeCheck {
   // What of the liquid was not in the recipe.
   void describe_liquid() {
     std::string defaults;
+    const auto& solutes = problem().medium.liquid.solutes;
     for (std::size_t i = 0; i < named_->values.size(); ++i) {
       const std::string_view symbol = named_->symbols[i];
       const std::size_t space = symbol.find(' ');
+      const bool taken = std::any_of(solutes.begin(), solutes.end(), [&](const auto& s) {
+        return s.assumed && s.name == symbol.substr(0, space);
+      });
+      if (!taken) continue;
       defaults += fmt::format("{}{} {} {}", defaults.empty() ? "" : ", ", symbol.substr(0, space),
                               named_->values[i].digits, symbol.substr(space + 1));
     }
-    const auto& solutes = problem().medium.liquid.solutes;
     if (std::any_of(solutes.begin(), solutes.end(), [](const auto& s) { return s.assumed; })) {
       assume("composition-assumed", fmt::format("composition of {} where the recipe gives none: {}",
                                                 binding_.liquid, defaults));
@@ -147,6 +151,7 @@ class Binder : answer_detail::RecipeCheck {
     const auto* contact = recipe_.contact ? &*recipe_.contact : nullptr;
     if (contact != nullptr && contact->ambient) {
       ambient.stated = take("contact.ambient", *contact->ambient);
+      question_ambient(ambient.stated.best);
       if (contact->altitude) question_ambient(*contact->altitude);
     } else if (contact != nullptr && contact->altitude) {
       ambient.altitude = take("contact.altitude", *contact->altitude);
@@ -159,10 +164,30 @@ class Binder : answer_detail::RecipeCheck {
     } else {
       const auto p = constant<Pressure>(library_, "assumed.ambient");
       ambient.stated = exactly(p);
+      binding_.doubt_not_stated.emplace_back("contact.ambient");
       assume("ambient-assumed",
-             fmt::format("ambient {:.2f} hPa (neither ambient nor altitude given)",
+             fmt::format("ambient {:.2f} hPa (neither ambient nor altitude given); altitude takes "
+                         "some 12 hPa per 100 m, the weather moves it by some 10 hPa",
                          in_unit(p.value(), *find_unit("hPa", Dimension::pressure))));
     }
+  }
+
+  // Nowhere where people work is it so low or so high.
+  void question_ambient(Pressure stated) {
+    const Record& range = library_.at("atmosphere.altitude_range");
+    const auto at = [&](std::size_t end) {
+      return problem().ambient.atmosphere(from_si<Length>(range.values[end].value)).value();
+    };
+    const double weather = constant<Pressure>(library_, "assumed.weather_spread").value();
+    if (stated.value() >= at(1) - weather && stated.value() <= at(0) + weather) return;
+    const auto& hectopascal = *find_unit("hPa", Dimension::pressure);
+    binding_.notes.push_back(
+        note(Severity::caution, "ambient-unlikely",
+             fmt::format("ambient {} hPa is found nowhere between {} and {} m; is it in the right "
+                         "unit? The stated value counts",
+                         significant(in_unit(stated.value(), hectopascal), 4),
+                         range.values[0].digits, range.values[1].digits),
+             recipe_.contact->ambient->source.place));
   }
 
   void question_ambient(const Given<Length>& altitude) {

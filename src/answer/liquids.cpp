@@ -272,6 +272,11 @@ const Record* relation_in_force(const Library& library, const LiquidSection* liq
       return nullptr;
     }
   }
+  if (by_composition && liquid->relation) {
+    sink.say(error("relation-unused", "by composition (basis = \"true\"), no relation is used",
+                   "basis = \"as tested\" with a relation, or basis = \"true\" without",
+                   "basis = \"as tested\"", liquid->relation->place));
+  }
   if (by_composition) return nullptr;
   if (usual == nullptr && liquid->basis) {
     sink.say(error("no-relation", "this liquid has no relation of its trade to be tested by",

@@ -14,9 +14,18 @@
 namespace capsigh {
 namespace {
 
-// A case of its own, whose doubts a thread may move.
+// A watched target by the place of its figure among all.
+struct Watch {
+  std::size_t slot = 0;
+  double divisor = 1;
+  Interval accepted;
+};
+
+// A case of its own, whose doubts a thread may move. The values are all figures, then 1 or 0 for
+// each watched target: whether it conforms.
 struct Drawn {
-  explicit Drawn(const Case& c) : problem(c), doubts(each_doubt(problem)) {}
+  Drawn(const Case& c, const std::vector<Watch>& watched)
+      : problem(c), doubts(each_doubt(problem)), watches(watched) {}
   Drawn(const Drawn&) = delete;
   Drawn& operator=(const Drawn&) = delete;
   Drawn(Drawn&&) = delete;
@@ -29,16 +38,38 @@ struct Drawn {
     const auto solved = solve(problem);
     if (refused(solved) != nullptr) return;
     std::size_t slot = 0;
+    const std::size_t figures = values.size() - watches.size();
     each_figure(std::get<Answer>(solved),
                 [&](const FigurePath&, const auto& figure, const JsonUnit&) {
-                  if (slot < values.size() && figure.asked) values[slot] = si_value(figure.value);
+                  if (slot < figures && figure.asked) values[slot] = si_value(figure.value);
                   ++slot;
                 });
+    for (std::size_t w = 0; w < watches.size(); ++w) {
+      const double content = values[watches[w].slot] / watches[w].divisor;
+      if (!std::isnan(content)) {
+        values[figures + w] = watches[w].accepted.contains(content) ? 1.0 : 0.0;
+      }
+    }
   }
 
   Case problem;
   std::vector<Doubt> doubts;
+  std::vector<Watch> watches;
 };
+
+std::vector<Watch> watches_of(const std::vector<WatchedTarget>& watched, const Answer& answer) {
+  std::vector<Watch> watches;
+  for (const auto& target : watched) {
+    Watch watch{0, target.divisor, target.accepted};
+    std::size_t slot = 0;
+    each_figure(answer, [&](const FigurePath& path, const auto&, const JsonUnit&) {
+      if (path.text() == target.path) watch.slot = slot;
+      ++slot;
+    });
+    watches.push_back(watch);
+  }
+  return watches;
+}
 
 std::string number(double share) { return significant(100 * share, 2); }
 
@@ -65,20 +96,24 @@ void name_figures(const std::vector<std::string>& figures, std::string code, std
 }  // namespace
 
 MonteCarloRun monte_carlo(const Case& c, Answer& answer, const MonteCarloOptions& options,
-                          double coverage, double most_unanswered, double agreement) {
+                          const std::vector<WatchedTarget>& watched, double coverage,
+                          double most_unanswered, double agreement) {
   std::vector<Shape> shapes;
   Case listed = c;
   for (const auto& doubt : each_doubt(listed)) shapes.push_back(doubt.shape);
   std::size_t slots = 0;
   each_figure(answer, [&](const FigurePath&, const auto&, const JsonUnit&) { ++slots; });
-  const ModelMaker make = [&c] {
-    return [drawn = std::make_shared<Drawn>(c)](std::span<const double> z,
-                                                std::span<double> values) { (*drawn)(z, values); };
+  const auto watches = watches_of(watched, answer);
+  const ModelMaker make = [&c, &watches] {
+    return [drawn = std::make_shared<Drawn>(c, watches)](
+               std::span<const double> z, std::span<double> values) { (*drawn)(z, values); };
   };
   SamplingPlan plan{options.draws, options.seed, options.threads, coverage, options.progress};
-  const auto sampled = sample(make, shapes, slots, plan);
+  const auto sampled = sample(make, shapes, slots + watches.size(), plan);
 
-  MonteCarloRun run{options.draws, options.seed, options.draws, coverage, {}};
+  MonteCarloRun run{options.draws, options.seed, options.draws, coverage, {}, {}};
+  for (std::size_t w = 0; w < watches.size(); ++w)
+    run.conforming.push_back(sampled[slots + w].mean);
   std::vector<std::string> without;
   std::vector<std::string> bent;
   std::size_t slot = 0;

@@ -202,18 +202,22 @@ std::vector<std::string> main_figures(const Report& report) {
   return paths;
 }
 
-void draw(const Case& c, const MonteCarloOptions& options, const Library& library, Report& report) {
+void draw(const Binding& binding, const MonteCarloOptions& options, const Library& library,
+          Report& report) {
   const auto share = [&](std::string_view key) {
     return library.at(key).values[0].value * library.at(key).factor;
   };
-  report.monte_carlo = monte_carlo(c, report.answer, options, share("assumed.coverage"),
-                                   share("assumed.most_unanswered"), share("assumed.agreement"));
+  report.monte_carlo =
+      monte_carlo(binding.problem, report.answer, options,
+                  answer_detail::watched_targets(binding, report.answer), share("assumed.coverage"),
+                  share("assumed.most_unanswered"), share("assumed.agreement"));
   append(report.cautions, report.monte_carlo->cautions);
 }
 
 void explain_doubts(Report& report) {
   constexpr double half = 0.5;
-  for (const auto& path : main_figures(report)) {
+  report.main_figures = main_figures(report);
+  for (const auto& path : report.main_figures) {
     MainDoubt d;
     d.of = path;
     d.lines = budget_of(report.budget, path);
@@ -294,7 +298,7 @@ Outcome<Report> report(const Outcome<Recipe>& recipe, std::string_view recipe_te
     return {{}, propagation.findings};
   }
   report.budget = std::move(propagation.budget);
-  if (options.monte_carlo.draws > 0) draw(problem, options.monte_carlo, library, report);
+  if (options.monte_carlo.draws > 0) draw(*binding, options.monte_carlo, library, report);
   explain_doubts(report);
   answer_detail::judge_targets(*binding, answer_detail::rule_of(*recipe, library), report);
   report.sources = cited_sources(report.trace, *binding, library);

@@ -218,16 +218,18 @@ int run(int argc, char** argv) {
   constexpr std::uint64_t most_draws = 20'000'000;
   constexpr std::uint64_t most_seed = std::numeric_limits<std::uint64_t>::max();
   constexpr std::uint64_t most_threads = 1024;
-  report_command
-      ->add_option("--monte-carlo", arguments.draws,
-                   "draw the doubts so many times, instead of first order")
-      ->check(whole_number(fewest_draws, most_draws));
+  auto* monte_carlo = report_command
+                          ->add_option("--monte-carlo", arguments.draws,
+                                       "draw the doubts so many times, instead of first order")
+                          ->check(whole_number(fewest_draws, most_draws));
   report_command->add_option("--seed", arguments.seed, "seed of the draws (1)")
-      ->check(whole_number(0, most_seed));
+      ->check(whole_number(0, most_seed))
+      ->needs(monte_carlo);
   report_command
       ->add_option("--threads", arguments.threads,
                    "threads for the draws (all cores); the result is the same")
-      ->check(whole_number(1, most_threads));
+      ->check(whole_number(1, most_threads))
+      ->needs(monte_carlo);
 
   std::string name;
   std::string as = "text";

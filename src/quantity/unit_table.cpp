@@ -96,11 +96,11 @@ constexpr auto kUnits = std::to_array<Unit>({
     {"mg/kg", mass_fraction, 1e-6},
     {"ppm", mass_fraction, 1e-6},
     {"ppb", mass_fraction, 1e-9},
-    {"Brix", mass_fraction, 1e-2},
-    {"°Brix", mass_fraction, 1e-2},
-    {"°Bx", mass_fraction, 1e-2},
-    {"Plato", mass_fraction, 1e-2},
-    {"°P", mass_fraction, 1e-2},
+    {"Brix", sugar_scale, 1e-2},
+    {"°Brix", sugar_scale, 1e-2},
+    {"°Bx", sugar_scale, 1e-2},
+    {"Plato", sugar_scale, 1e-2},
+    {"°P", sugar_scale, 1e-2},
     {"% v/v", volume_fraction, 1e-2},
     {"% vol", volume_fraction, 1e-2},
     {"s", duration, 1},
@@ -149,6 +149,7 @@ std::string_view dimension_name(Dimension d) {
     case amount_concentration: return "amount concentration";
     case molality: return "molality";
     case mass_fraction: return "mass fraction";
+    case sugar_scale: return "Brix or Plato";
     case volume_fraction: return "volume fraction";
     case density: return "density";
     case duration: return "time";

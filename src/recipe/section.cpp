@@ -225,14 +225,17 @@ GivenSolute Section::amount_of(const Member& member, std::span<const Dimension> 
 std::optional<GivenSolute> Section::solute(const std::string& key) {
   const Member* member = take(key);
   if (member == nullptr) return std::nullopt;
-  constexpr std::array brix{Dimension::mass_fraction, Dimension::fraction};
+  constexpr std::array brix{Dimension::sugar_scale, Dimension::mass_fraction, Dimension::fraction};
+  constexpr std::array extract{Dimension::mass_fraction, Dimension::sugar_scale,
+                               Dimension::mass_concentration, Dimension::amount_concentration};
   constexpr std::array ethanol{Dimension::volume_fraction, Dimension::mass_fraction,
                                Dimension::mass_concentration};
   constexpr std::array others{Dimension::mass_fraction, Dimension::mass_concentration,
                               Dimension::amount_concentration};
   if (key == "brix") return amount_of(*member, brix, "10.5 %");
   if (key == "ethanol") return amount_of(*member, ethanol, "5 % v/v");
-  return amount_of(*member, others, key == "extract" ? "4.2 % w/w" : "12 g/L");
+  if (key == "extract") return amount_of(*member, extract, "4.2 % w/w");
+  return amount_of(*member, others, "12 g/L");
 }
 
 std::vector<GivenSolute> Section::salts() {

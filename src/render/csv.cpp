@@ -29,9 +29,32 @@ std::vector<Column> columns_of(const Report& report) {
   std::string codes;
   for (const auto& caution : report.cautions) codes += (codes.empty() ? "" : " ") + caution.code;
   columns.push_back({"cautions", codes});
+  std::string assumed;
+  for (const auto& a : report.assumptions) assumed += (assumed.empty() ? "" : " ") + a.code;
+  columns.push_back({"assumptions", assumed});
+  std::string exact;
+  for (const auto& key : report.doubt_not_stated) exact += (exact.empty() ? "" : " ") + key;
+  columns.push_back({"doubt_not_stated", exact});
+  for (const auto& [key, text] : report.about) columns.push_back({"about." + key, text});
+  columns.push_back({"version", report.audit.version});
   columns.push_back({"recipe_digest", report.audit.recipe_digest});
   columns.push_back({"constants_digest", report.audit.constants_digest});
+  if (report.monte_carlo) {
+    columns.push_back({"monte_carlo.draws", std::to_string(report.monte_carlo->draws)});
+    columns.push_back({"monte_carlo.seed", std::to_string(report.monte_carlo->seed)});
+  }
+  for (const auto& [key, text] : report.audit.inputs) {
+    if (key.starts_with("contact.") || key.starts_with("target.") || key.starts_with("judging.")) {
+      columns.push_back({"input." + key, text});
+    }
+  }
+  for (const auto& o : report.second_opinion) {
+    columns.push_back(
+        {"second_opinion." + o.relation + "." + o.quantity + " [" + std::string(o.unit.ucum) + "]",
+         shortest(for_machines(o.value))});
+  }
   for (const auto& j : report.judged) {
+    columns.push_back({"target." + j.gas + ".rule", j.guarded ? "guarded" : "simple"});
     columns.push_back({"target." + j.gas + ".verdict", j.verdict == Verdict::inside ? "inside"
                                                        : j.verdict == Verdict::outside
                                                            ? "outside"

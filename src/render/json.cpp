@@ -151,6 +151,7 @@ Json one(const Report& report, bool with_trace) {
     if (!better.is_null()) target["advice"] = better;
   }
   j["relation"] = report.relation;
+  j["answers"] = report.main_figures;
   j["second_opinion"] = Json::array();
   for (const auto& o : report.second_opinion) {
     j["second_opinion"].push_back(

@@ -62,7 +62,7 @@ void TextPage::acceptance(const JudgedTarget& j) {
          fmt::format("guard band {} {}", significant(guard, 2), in.text));
   }
   if (j.advice.by != Advice::By::nothing) {
-    out += wrapped("    ", advice_text(j.advice, zone.empty ? "open the zone" : "decide"));
+    out += wrapped("    ", advice_text(j.advice, zone.empty ? "open the zone" : "decide", asked_));
   }
 }
 
@@ -75,7 +75,7 @@ void TextPage::doubts(const Report& report) {
     if (d.nonlinear) {
       out += wrapped("    ", "not in proportion to its inputs: --monte-carlo tells its doubt");
     }
-    out += wrapped("    ", advice_text(d.to_halve, "halve it"));
+    out += wrapped("    ", advice_text(d.to_halve, "halve it", asked_));
   }
 }
 

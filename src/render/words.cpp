@@ -10,8 +10,10 @@
 namespace capsigh::render_detail {
 namespace {
 
-// The unit in which a limit of error is spoken of.
-const Unit* spoken_unit(std::string_view si_unit, std::string_view key) {
+using Asked = const std::vector<const Unit*>&;
+
+// The unit in which a limit of error is spoken of: of those asked for, else our own choice.
+const Unit* spoken_unit(std::string_view si_unit, std::string_view key, Asked asked) {
   struct Spoken {
     std::string_view si;
     std::string_view unit;
@@ -31,16 +33,24 @@ const Unit* spoken_unit(std::string_view si_unit, std::string_view key) {
     return content ? find_unit("vol", Dimension::gas_volumes) : find_unit("%", Dimension::fraction);
   }
   for (const auto& row : table) {
-    if (row.si == si_unit) return find_unit(row.unit, row.dimension);
+    if (row.si != si_unit) continue;
+    for (const auto* unit : asked) {
+      // A difference of temperatures goes by the name of its scale.
+      const bool scale = unit->dimension == Dimension::temperature &&
+                         row.dimension == Dimension::temperature_difference;
+      if (scale || unit->dimension == row.dimension) return unit;
+    }
+    return find_unit(row.unit, row.dimension);
   }
   return nullptr;
 }
 
-std::string limit_text(double si, std::string_view si_unit, std::string_view key, bool down) {
-  const Unit* unit = spoken_unit(si_unit, key);
+std::string limit_text(double si, const Improvement& i, bool down, Asked asked) {
+  const Unit* unit = spoken_unit(i.unit, i.input, asked);
   const double value = unit == nullptr ? si : difference_in_unit(si, *unit);
   const auto text = down ? rounded_down(value, value) : significant(value, 2);
-  return fmt::format("±\x1f{}\x1f{}", text, unit == nullptr ? si_unit : unit->text);
+  return fmt::format("±\x1f{}\x1f{}", text,
+                     unit == nullptr ? std::string_view(i.unit) : unit->text);
 }
 
 std::string_view instrument(std::string_view key) {
@@ -52,7 +62,11 @@ std::string_view instrument(std::string_view key) {
 
 }  // namespace
 
-std::string advice_text(const Advice& advice, std::string_view would) {
+std::string advice_text(const Advice& advice, std::string_view would,
+                        const std::vector<const Unit*>& asked) {
+  if (!advice.inputs_stated) {
+    return "from published constants alone: the inputs that enter state no ±, and count as exact";
+  }
   if (advice.by == Advice::By::none) {
     return fmt::format(
         "no instrument would {}: with perfect ones {} % of the doubt stays, from "
@@ -62,8 +76,8 @@ std::string advice_text(const Advice& advice, std::string_view would) {
   std::string text;
   for (const auto& i : advice.improvements) {
     text += fmt::format("{}{} good to {} ({}, now {})", text.empty() ? "" : " and ",
-                        instrument(i.input), limit_text(i.needed, i.unit, i.input, true), i.input,
-                        limit_text(i.now, i.unit, i.input, false));
+                        instrument(i.input), limit_text(i.needed, i, true, asked), i.input,
+                        limit_text(i.now, i, false, asked));
   }
   const bool together = advice.by == Advice::By::instruments && advice.improvements.size() > 1;
   return text + (together ? " together would " : " would ") + std::string(would);

@@ -144,3 +144,65 @@ TEST_CASE("the instrument that halves the doubt, does") {
   CHECK(within_relative(si_value(better.answer.gases[0].volumes.u),
                         0.8 * si_value(now.answer.gases[0].volumes.u), 1e-4));
 }
+
+TEST_CASE("a target at the package is judged there") {
+  const auto judged = [](const std::string& pressure) {
+    const auto r =
+        answered("[contact]\ntemperature = \"4 degC ± 0.3 K\"\npressure = \"" + pressure +
+                 " bar gauge ± 0.05 bar\"\n[target]\nat = \"package\"\n"
+                 "CO2 = \"7.0 g/L ± 0.4 g/L\"\n[container]\nbrimful = \"355 mL\"\n"
+                 "fill = \"330 mL\"\n");
+    REQUIRE(r.judged.size() == 1);
+    return r.judged[0].verdict;
+  };
+  CHECK(judged("1.62") == Verdict::inside);
+  CHECK(judged("2.5") == Verdict::outside);
+  CHECK(judged("1.0") == Verdict::outside);
+}
+
+TEST_CASE("with draws, the probability of conformity is counted") {
+  // Only the gauge is in doubt, evenly over ± 0.1 bar: of the contents, evenly spread (the
+  // curvature over so little is below 0.1 %), the share below the limit is that of the pressures.
+  const auto at = [](const std::string& limit) {
+    return drawn(
+        "[liquid]\nlike = \"soft drink\"\n[contact]\ntemperature = \"4 degC\"\n"
+        "pressure = \"1.6 bar gauge ± 0.1 bar\"\naltitude = \"350 m\"\n[target]\n"
+        "CO2 = { max = \"" +
+            limit + " vol\" }\n",
+        40'000);
+  };
+  const auto content = [](const std::string& pressure) {
+    const auto r = answered(
+        "[liquid]\nlike = \"soft drink\"\n[contact]\ntemperature = \"4 degC\"\n"
+        "pressure = \"" +
+        pressure + " bar gauge\"\naltitude = \"350 m\"\n");
+    return si_value(r.answer.gases[0].volumes.value);
+  };
+  const auto r = at(std::to_string(content("1.66")));
+  REQUIRE(r.judged.size() == 1);
+  // (0.06 + 0.1)/0.2 = 0.8, by a normal 0.85. Four times the scatter of counting: 0.008; the
+  // volume of a mole adds its 0.02 %.
+  CHECK(std::abs(r.judged[0].probability - 0.8) <= 0.012);
+  CHECK(r.judged[0].verdict == Verdict::undecided);
+  CHECK(at(std::to_string(content("1.7001"))).judged[0].verdict == Verdict::inside);
+}
+
+TEST_CASE("a doubt too coarse for any verdict decides nothing") {
+  const auto r = answered(
+      "[contact]\ntemperature = \"4 degC\"\npressure = \"1.6 bar gauge ± 1.5 bar\"\n[target]\n"
+      "CO2 = \"3.7 vol ± 0.05 vol\"\n");
+  CHECK(r.judged[0].zone.best_probability <= 0.05);
+  CHECK(r.judged[0].verdict == Verdict::undecided);
+}
+
+TEST_CASE("ambient pressures that are found nowhere are questioned, assumed ones listed") {
+  const auto has = [](const Report& r, const std::string& code) {
+    return std::any_of(r.cautions.begin(), r.cautions.end(),
+                       [&](const Finding& f) { return f.code == code; });
+  };
+  const std::string contact = "[contact]\ntemperature = \"4 degC\"\npressure = \"1 bar gauge\"\n";
+  CHECK(has(answered(contact + "ambient = \"101.3 hPa\"\n"), "ambient-unlikely"));
+  CHECK_FALSE(has(answered(contact + "ambient = \"985 hPa\"\n"), "ambient-unlikely"));
+  const auto exact = answered(contact).doubt_not_stated;
+  CHECK(std::find(exact.begin(), exact.end(), "contact.ambient") != exact.end());
+}

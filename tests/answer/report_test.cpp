@@ -66,7 +66,8 @@ TEST_CASE("assumptions and unstated doubts are listed") {
   std::vector<std::string> codes;
   for (const auto& a : r.assumptions) codes.push_back(a.code);
   CHECK(codes == std::vector<std::string>{"liquid-assumed", "gas-assumed", "ambient-assumed"});
-  CHECK(r.doubt_not_stated == std::vector<std::string>{"contact.temperature", "contact.pressure"});
+  CHECK(r.doubt_not_stated ==
+        std::vector<std::string>{"contact.ambient", "contact.temperature", "contact.pressure"});
 }
 
 TEST_CASE("a target never over-determines") {

@@ -28,6 +28,7 @@ struct Advice {
   std::vector<Improvement> improvements;
   /// What the doubt would be with perfect instruments, as a share of what it is.
   double records_alone = 0;
+  bool inputs_stated = true;  ///< false: no input of the recipe has a ± that enters
 };
 
 /// `lines`: the budget of one figure; `wanted`: the standard uncertainty to reach, as a share of

@@ -3,10 +3,13 @@
 
 #include <cstdint>
 #include <functional>
+#include <string>
+#include <vector>
 
 #include "capsigh/answer/case.hpp"
 #include "capsigh/answer/figures.hpp"
 #include "capsigh/quantity/finding.hpp"
+#include "capsigh/quantity/validity.hpp"
 
 namespace capsigh {
 
@@ -17,11 +20,21 @@ struct MonteCarloOptions {
   std::function<void(double share)> progress;
 };
 
+/// A content that is judged: its figure, what the SI value is divided by to be in the measure of
+/// the target, how machines read that measure, and what conforms.
+struct WatchedTarget {
+  std::string path;
+  double divisor = 1;
+  JsonUnit unit;
+  Interval accepted;
+};
+
 struct MonteCarloRun {
   std::uint64_t draws = 0;
   std::uint64_t seed = 0;
-  std::uint64_t unanswered = 0;  ///< draws at which the whole has no answer
-  double coverage = 0;           ///< probability of the intervals
+  std::uint64_t unanswered = 0;    ///< draws at which the whole has no answer
+  double coverage = 0;             ///< probability of the intervals
+  std::vector<double> conforming;  ///< share of the draws that conform, a watched target each
   Findings cautions;
 };
 
@@ -30,6 +43,7 @@ struct MonteCarloRun {
 /// than `most_unanswered` of its draws without an answer has no u; a caution says so, and where u
 /// differs from first order by more than `agreement` (a share of it).
 MonteCarloRun monte_carlo(const Case& c, Answer& answer, const MonteCarloOptions& options,
-                          double coverage, double most_unanswered, double agreement);
+                          const std::vector<WatchedTarget>& watched, double coverage,
+                          double most_unanswered, double agreement);
 
 }  // namespace capsigh

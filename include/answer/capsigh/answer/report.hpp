@@ -69,6 +69,7 @@ struct Report {
   std::vector<JudgedTarget> judged;
   std::vector<SecondOpinion> second_opinion;
   std::vector<BudgetLine> budget;
+  std::vector<std::string> main_figures;  ///< paths of the figures that answer the question
   std::vector<MainDoubt> main_doubts;
   std::optional<MonteCarloRun> monte_carlo;
   std::string wine_class;  ///< what the gauge pressure at 20 °C of a wine is held against

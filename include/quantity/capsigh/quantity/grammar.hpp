@@ -25,6 +25,7 @@ enum class Dimension {
   amount_concentration,
   molality,
   mass_fraction,
+  sugar_scale,  ///< Brix and Plato: mass fraction of dissolved solids
   volume_fraction,
   density,
   duration,
