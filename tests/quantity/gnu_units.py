@@ -5,7 +5,7 @@ import sys
 # Our spelling -> theirs, and the SI unit of the dimension. Spelled out so that a new unit must be added here.
 SI = {"pressure": "Pa", "temperature": "K", "temperature difference": "K", "volume": "m^3", "length": "m", "mass": "kg",
       "fraction": "1", "volumes of gas": "1", "mass concentration": "kg/m^3", "amount concentration": "mol/m^3",
-      "molality": "mol/kg", "mass fraction": "1", "volume fraction": "1", "density": "kg/m^3", "time": "s",
+      "molality": "mol/kg", "mass fraction": "1", "Brix or Plato": "1", "volume fraction": "1", "density": "kg/m^3", "time": "s",
       "area": "m^2", "mass flow": "kg/s", "volume flow": "m^3/s", "normal volume flow of gas": "m^3/s", "rate": "1/s"}
 THEIRS = {"bar": "bar", "barg": "bar", "bara": "bar", "mbar": "mbar", "hPa": "hPa", "kPa": "kPa", "MPa": "MPa",
           "Pa": "Pa", "psi": "psi", "psig": "psi", "psia": "psi", "atm": "atm", "mmHg": "mmHg", "inHg": "inHg",
