@@ -5,6 +5,8 @@
 #include <algorithm>
 #include <cmath>
 
+#include "bind_input.hpp"
+#include "bind_package.hpp"
 #include "recipe_check.hpp"
 #include "records.hpp"
 
@@ -17,13 +19,6 @@ using answer_detail::note;
 
 constexpr std::string_view kSelection = "selection.henry.";
 constexpr std::string_view kMixture = "mixture.";
-
-template <class Q>
-Uncertain<Q> uncertain(const Given<Q>& given) {
-  if (!given.plus_minus) return exactly(*given.value);
-  // A limit of error is rectangular: u = a/√3 (JCGM 100, 4.3.7).
-  return {*given.value, *given.plus_minus * (1.0 / std::sqrt(3.0)), Shape::rectangular, 0};
-}
 
 class Binder : answer_detail::RecipeCheck {
  public:
@@ -47,8 +42,7 @@ class Binder : answer_detail::RecipeCheck {
  private:
   template <class Q>
   Uncertain<Q> take(const std::string& key, const Given<Q>& given) {
-    if (!given.plus_minus) binding_.doubt_not_stated.push_back(key);
-    return uncertain(given);
+    return answer_detail::take(binding_, key, given);
   }
 
   // Bicarbonate does not stay in an acid drink: it ends as CO2.
@@ -302,8 +296,13 @@ class Binder : answer_detail::RecipeCheck {
     if (!given.closing_pressure) {
       closed += std::string(closed.empty() ? "" : " and ") + "at 0 bar gauge";
     }
-    assume("closing-assumed",
-           "closed " + (closed.empty() ? "" : closed + ", ") + "in a rigid container");
+    const bool rigid = !given.kind && !given.stretch;
+    if (!closed.empty() || rigid) {
+      assume("closing-assumed", "closed " + closed + (rigid && !closed.empty() ? ", " : "") +
+                                    (rigid ? "in a rigid container" : ""));
+    }
+    for (const auto& limit : given.limit) container.limits.push_back(bind_content(limit, ""));
+    answer_detail::bind_package(given, library_, binding_, container);
     problem().container = container;
   }
 
@@ -359,6 +358,16 @@ class Binder : answer_detail::RecipeCheck {
     problem().opening = opening;
   }
 
+  // Oxygen that is measured at closing, limited, or comes in through the wall.
+  bool follows_oxygen(const ContainerCase& container) {
+    const auto oxygen = index("O2");
+    const auto is = [&](const auto& of) { return of.gas == oxygen; };
+    const auto& limits = container.limits;
+    return container.closing_oxygen || std::any_of(limits.begin(), limits.end(), is) ||
+           (container.shelf &&
+            std::any_of(container.shelf->wall.begin(), container.shelf->wall.end(), is));
+  }
+
   void mark_presence() {
     auto& c = problem();
     // Any share will do to see which gases are there when one is to be found.
@@ -370,7 +379,7 @@ class Binder : answer_detail::RecipeCheck {
     for (std::size_t i = 0; i < c.medium.size(); ++i) {
       c.in_contact.push_back(shares[i].value() > 0 ? 1 : 0);
       const bool enters = (air && c.air[i].value() > 0) ||
-                          (c.container && c.container->closing_oxygen && i == index("O2")) ||
+                          (c.container && follows_oxygen(*c.container) && i == index("O2")) ||
                           (c.container && c.container->nitrogen_dose && i == index("N2"));
       c.in_container.push_back(c.in_contact.back() != 0 || enters ? 1 : 0);
     }

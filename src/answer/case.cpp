@@ -46,6 +46,22 @@ std::string_view unit_of(ContentMeasure measure) {
   return "1";
 }
 
+// Storage and wall.
+void package_doubts(DoubtList& list, Case& c) {
+  auto& container = *c.container;
+  list.input("container.stretch", container.stretch);
+  if (container.typical_stretch) list.record(container.typical_stretch->doubt);
+  for (std::size_t i = 0; i < container.storage.size(); ++i) {
+    list.input("container.storage[" + std::to_string(i) + "]", container.storage[i]);
+  }
+  if (!container.shelf) return;
+  for (auto& wall : container.shelf->wall) {
+    list.input("container.wall." + std::string(c.medium.gases[wall.gas].name), wall.stated);
+    list.record(wall.typical.doubt);
+  }
+  list.record(container.shelf->activation.doubt);
+}
+
 }  // namespace
 
 Shares contact_shares(const Case& c, Fraction found) {
@@ -103,6 +119,7 @@ std::vector<Doubt> each_doubt(Case& c) {
                  loss.amount, unit_of(loss.measure));
     }
     list.input("container.nitrogen_dose", container.nitrogen_dose);
+    package_doubts(list, c);
   }
   if (c.opening) list.input("opening.temperature", c.opening->temperature);
   for (auto& solute : c.medium.liquid.solutes) {

@@ -74,6 +74,18 @@ std::optional<Sensitivity> sensitivity(Case& c, const Doubt& doubt,
   return s;
 }
 
+constexpr std::string_view kFarSearch = "container.safe_temperature";
+
+Finding far_search(std::string_view figure) {
+  Finding f;
+  f.severity = Severity::caution;
+  f.code = "found-out-of-range";
+  f.message = fmt::format(
+      "{} lies where formulas leave their range: it is a hint, with more doubt than is shown",
+      figure);
+  return f;
+}
+
 Finding too_wide(const Doubt& doubt) {
   Finding f;
   f.code = "doubt-too-wide";
@@ -84,9 +96,13 @@ Finding too_wide(const Doubt& doubt) {
 }
 
 bool main_figure(const std::string& path) {
-  return path.ends_with(".volumes") || path.ends_with(".mass_concentration") ||
-         path.ends_with(".pressure_gauge") || path == "condition.temperature" ||
-         path.starts_with("saturation.") || path.starts_with("blend.") || path.ends_with("_loss");
+  if (path.find(".course.") != std::string::npos) return false;
+  return path.ends_with(".safe_temperature") || path.ends_with(".largest_fill") ||
+         path.ends_with(".until_limit") || path.ends_with(".oxygen.total") ||
+         path.ends_with(".allowed_air") || path.ends_with(".volumes") ||
+         path.ends_with(".mass_concentration") || path.ends_with(".pressure_gauge") ||
+         path == "condition.temperature" || path.starts_with("saturation.") ||
+         path.starts_with("blend.") || path.ends_with("_loss");
 }
 
 std::string quantity_text(double si, std::string_view unit, Dimension dimension) {
@@ -184,12 +200,19 @@ Findings judge_ranges(Case& c, const Trace& trace, double widening_per_width) {
     Conditions conditions;
   };
   std::map<const Record*, Worst> worst;
+  std::string_view beyond;
   for (const auto& chain : trace.chains) {
+    // What is searched for far away from every other figure must not widen theirs.
+    const bool far = chain.figure == kFarSearch;
     for (const auto& step : chain.steps) {
       const Record* judged = step.record != nullptr ? step.record : step.definition;
       if (judged == nullptr) continue;
       const double widths = widths_outside(judged->range, step.conditions);
       if (widths <= 0) continue;
+      if (far) {
+        beyond = chain.figure;
+        continue;
+      }
       auto& entry = worst[judged];
       if (widths > entry.widths) entry = {widths, step.conditions};
     }
@@ -217,6 +240,7 @@ Findings judge_ranges(Case& c, const Trace& trace, double widening_per_width) {
   }
   std::sort(cautions.begin(), cautions.end(),
             [](const Finding& a, const Finding& b) { return a.message < b.message; });
+  if (!beyond.empty()) cautions.push_back(far_search(beyond));
   return cautions;
 }
 

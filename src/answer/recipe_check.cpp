@@ -5,6 +5,7 @@
 #include <algorithm>
 #include <cmath>
 
+#include "bind_package.hpp"
 #include "records.hpp"
 
 namespace capsigh::answer_detail {
@@ -171,7 +172,8 @@ void RecipeCheck::need_air() {
   if (container != nullptr && container->closing_oxygen) need_gas("O2");
   if (container != nullptr && container->nitrogen_dose) need_gas("N2");
   const bool with_air =
-      container != nullptr && (container->closing_air || container->closing_air_volume);
+      container != nullptr && (container->closing_air || container->closing_air_volume ||
+                               !container->limit.empty() || has_shelf(*container));
   if (!recipe_.opening && !with_air) return;
   cite(mixture);
   for (const auto& gas : air_.gases) need_gas(gas);
@@ -260,6 +262,9 @@ void RecipeCheck::check_contents() {
   }
   if (recipe_.container) {
     for (const auto& content : recipe_.container->filling_loss) check_content_gas(content);
+    for (const auto& content : recipe_.container->limit) {
+      if (content.gas.text == "CO2") check_content_gas(content);
+    }
   }
   check_target_at();
   check_find();
@@ -325,6 +330,7 @@ void RecipeCheck::check_altitude() {
 }
 
 void RecipeCheck::check_container(const ContainerSection& container) {
+  for (auto& f : check_package(container, library_)) findings_.push_back(std::move(f));
   const bool filled = container.fill || container.fill_mass;
   if (!container.brimful || !filled) {
     error("container-incomplete",

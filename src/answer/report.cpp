@@ -7,9 +7,14 @@
 #include "capsigh/answer/solve.hpp"
 #include "capsigh/quantity/grammar.hpp"
 #include "judging.hpp"
+#include "report_package.hpp"
 
 namespace capsigh {
 namespace {
+
+using answer_detail::caution;
+using answer_detail::celsius;
+using answer_detail::freezing_point;
 
 void append(Findings& to, const Findings& more) { to.insert(to.end(), more.begin(), more.end()); }
 
@@ -44,6 +49,11 @@ std::vector<CitedSource> cited_sources(const Trace& trace, const Binding& bindin
 // Where in the recipe a refusal is best shown: at the value that asks for the impossible.
 Place place_of(const Recipe& recipe, const Refusal& refusal) {
   const auto& contact = recipe.contact;
+  if (refusal.code == RefusalCode::temperature_beyond_model && recipe.container) {
+    for (const auto& t : recipe.container->storage) {
+      if (t.value && t.value->kelvin() == refusal.value) return t.source.place;
+    }
+  }
   const bool of_container = refusal.code == RefusalCode::container_without_space ||
                             refusal.code == RefusalCode::air_exceeds_headspace ||
                             refusal.asked_by == AskedBy::closing;
@@ -78,14 +88,6 @@ void caution_unreachable(Report& report) {
   }
 }
 
-Finding caution(std::string code, std::string message) {
-  Finding f;
-  f.severity = Severity::caution;
-  f.code = std::move(code);
-  f.message = std::move(message);
-  return f;
-}
-
 // Henry's law is for dilute solutions, the solutes' constants for drinks.
 void caution_concentration(const Case& c, const Library& library, Report& report) {
   const auto share = [&](std::string_view key) {
@@ -118,21 +120,12 @@ void caution_concentration(const Case& c, const Library& library, Report& report
 
 // Below its freezing point (Raoult) a liquid is answered as if supercooled.
 void caution_freezing(const Case& c, const Library& library, Report& report) {
-  const auto liquid = compose(c.medium.liquid, c.medium.content_temperature);
-  const double constant = library.at("freezing.water").values[0].value;
-  const double water = liquid.x_water.value() * liquid.particles.value() *
-                       c.medium.liquid.water_molar_mass.law.value.value();
-  const double dissolved = (1 - liquid.x_water.value()) * liquid.particles.value() / water;
-  const Temperature freezing =
-      c.medium.zero_celsius - from_si<TemperatureDifference>(constant * dissolved);
-  const auto celsius = [](Temperature t) {
-    return significant(in_unit(t.kelvin(), *find_unit("°C", Dimension::temperature)), 3);
-  };
+  const Temperature freezing = freezing_point(c, library);
   const auto check = [&](const Figure<Temperature>& t) {
     if (!t.asked || t.value >= freezing) return false;
-    report.cautions.push_back(caution(
-        "frozen", fmt::format("at {} °C the liquid may be frozen: it freezes at about {} °C",
-                              celsius(t.value), celsius(freezing))));
+    report.cautions.push_back(
+        caution("frozen", fmt::format("at {} the liquid may be frozen: it freezes at about {}",
+                                      celsius(t.value), celsius(freezing))));
     return true;
   };
   if (!check(report.answer.temperature)) check(report.answer.opening_temperature);
@@ -148,34 +141,6 @@ Findings ranges_as_errors(const Findings& cautions, const std::string& file) {
     errors.back().place = Place{file, 0, 0, 1, ""};
   }
   return errors;
-}
-
-Finding package_caution() {
-  Finding f;
-  f.severity = Severity::caution;
-  f.code = "package-pressure";
-  f.message =
-      "pressurised packages can burst: compare with the container maker's rating at the "
-      "warmest it will get; local codes and the maker decide, not this figure";
-  return f;
-}
-
-// A package above its rating comes first on the page, at whatever temperature the recipe names.
-void judge_rating(Report& report) {
-  const auto above = [&](const Figure<Pressure>& margin, const Figure<Temperature>& at) {
-    if (!margin.asked || margin.value.value() >= 0) return;
-    report.limits_met = false;
-    Finding f;
-    f.severity = Severity::caution;
-    f.code = "over-rating";
-    f.message = fmt::format(
-        "DANGER: at {} °C the package stands above its rating by {} bar",
-        significant(in_unit(at.value.kelvin(), *find_unit("°C", Dimension::temperature)), 3),
-        significant(in_unit(-margin.value.value(), *find_unit("bar", Dimension::pressure)), 3));
-    report.cautions.insert(report.cautions.begin(), std::move(f));
-  };
-  for (const auto& c : report.answer.container) above(c.margin, c.temperature);
-  above(report.answer.opening_margin, report.answer.opening_temperature);
 }
 
 // The figures that answer the question, as the text report shows them.
@@ -198,7 +163,7 @@ std::vector<std::string> main_figures(const Report& report) {
       paths.push_back(at.then(s.pressure_gauge.asked ? "pressure_gauge" : "temperature").text());
     }
   }
-  if (!a.container.empty()) paths.emplace_back("container.at.0.pressure_gauge");
+  if (!a.package.at.empty()) paths.emplace_back("container.at.0.pressure_gauge");
   return paths;
 }
 
@@ -247,6 +212,7 @@ void describe(const Recipe& recipe, const Binding& binding, const Library& libra
   for (std::size_t i = 0; i < c.medium.size(); ++i) {
     if (c.in_contact[i] != 0) report.gases.emplace_back(c.medium.gases[i].name);
   }
+  if (c.container) answer_detail::describe_package(recipe, *c.container, report);
   report.solved_for_pressure = c.contact.known == Known::temperature_content;
   report.solved_for_temperature = c.contact.known == Known::pressure_content;
   for (const auto& target : recipe.target) {
@@ -289,8 +255,7 @@ Outcome<Report> report(const Outcome<Recipe>& recipe, std::string_view recipe_te
   caution_unreachable(report);
   caution_concentration(problem, library, report);
   caution_freezing(problem, library, report);
-  if (problem.container) report.cautions.push_back(package_caution());
-  judge_rating(report);
+  answer_detail::caution_package(problem, library, report);
   report.second_opinion = second_opinions(*binding, report.answer, library);
   auto propagation = propagate(problem, report.answer);
   if (has_error(propagation.findings)) {
@@ -301,6 +266,7 @@ Outcome<Report> report(const Outcome<Recipe>& recipe, std::string_view recipe_te
   if (options.monte_carlo.draws > 0) draw(*binding, options.monte_carlo, library, report);
   explain_doubts(report);
   answer_detail::judge_targets(*binding, answer_detail::rule_of(*recipe, library), report);
+  answer_detail::judge_package(answer_detail::rule_of(*recipe, library), report);
   report.sources = cited_sources(report.trace, *binding, library);
   report.audit.version = version();
   report.audit.recipe_digest = sha1_digest(recipe_text);

@@ -1,6 +1,7 @@
 #include "capsigh/answer/solve.hpp"
 
 #include <cmath>
+#include <limits>
 
 #include "capsigh/balance/bracketing.hpp"
 #include "capsigh/quantity/grammar.hpp"
@@ -104,28 +105,43 @@ OrRefusal<Pressure> Solver::headspace_for(std::size_t gas, Molality wanted) cons
 OrRefusal<Pressure> Solver::headspace_for_package(std::size_t gas, Molality wanted) const {
   const auto at_least = headspace_for(gas, wanted);
   if (refused(at_least) != nullptr) return at_least;
-  const auto residual = [&](double pascal) {
-    const auto settled = settled_package(from_si<Pressure>(pascal));
-    // An impossible package is above every wish.
-    if (refused(settled) != nullptr) return wanted.value();
-    return (std::get<ClosedState>(settled).contents[gas] - wanted).value();
+  const auto closing_at = at_temperature(m_, liquid_, closing_temperature());
+  const auto& storage = c_.container->storage;
+  const auto settled_at =
+      storage.empty() ? closing_at : at_temperature(m_, liquid_, storage.front().now());
+  const auto settled = [&](double pascal) {
+    return settled_package(closing_at, settled_at, from_si<Pressure>(pascal));
   };
+  const auto missing = [&](double pascal, double without) {
+    const auto state = settled(pascal);
+    if (refused(state) != nullptr) return without;
+    return (std::get<ClosedState>(state).contents[gas] - wanted).value();
+  };
+  const double least = contact_.at.vapour.value() * (1.0 + 1e-9);
+  const double most = m_.pressure_limit.value();
+  const double near = std::get<Pressure>(at_least).value();
+  constexpr double nearby = 1.05;
+  const auto quick = root_near(
+      [&](double pascal) { return missing(pascal, std::numeric_limits<double>::quiet_NaN()); },
+      near, nearby * near, least, most);
+  if (quick) return from_si<Pressure>(*quick);
+  // An impossible package is above every wish.
   const auto root =
-      root_between(residual, std::get<Pressure>(at_least).value(), m_.pressure_limit.value());
-  if (!root) {
-    // Already enough at the content itself: the headspace brings more than it takes.
-    const auto settled = settled_package(std::get<Pressure>(at_least));
-    if (const auto* no = refused(settled)) return *no;
-    return at_least;
-  }
-  return from_si<Pressure>(*root);
+      root_between([&](double pascal) { return missing(pascal, wanted.value()); }, least, most);
+  if (root) return from_si<Pressure>(*root);
+  const auto state = settled(near);
+  if (const auto* no = refused(state)) return *no;
+  return Refusal{RefusalCode::no_pressure_holds, wanted.value(), most};
 }
 
-OrRefusal<ClosedState> Solver::settled_package(Pressure headspace) const {
-  const auto closing = closing_with(taken_up(contact_.at, contact_.mixture, headspace));
+// The package filled with what the liquid takes up under that headspace, settled at its first
+// storage temperature, else at closing.
+OrRefusal<ClosedState> Solver::settled_package(const AtTemperature& closing_at,
+                                               const AtTemperature& settled_at,
+                                               Pressure headspace) const {
+  const auto closing = closing_with(closing_at, taken_up(contact_.at, contact_.mixture, headspace));
   if (const auto* no = refused(closing)) return *no;
-  const auto& closed = std::get<Closing>(closing);
-  return equilibrium(m_, liquid_, close(m_, liquid_, closed), closed.temperature);
+  return equilibrium(m_, close(m_, closing_at, std::get<Closing>(closing)), settled_at);
 }
 
 OrRefusal<Pressure> Solver::pressure_for_target(std::size_t gas, Molality wanted) const {
@@ -292,114 +308,15 @@ std::optional<Refusal> Solver::saturation_of(const ContentCase& target) {
   return std::nullopt;
 }
 
-Pressure Solver::closing_pressure() const {
-  if (c_.container->closing_absolute) return c_.container->closing_absolute->now();
-  return absolute(c_.container->closing_gauge.now(), contact_.ambient);
-}
-
-// The dry headspace at closing: its air, the rest the recipe's gas.
-Shares Solver::headspace_at_closing(Fraction air) const {
-  Shares shares;
-  for (std::size_t i = 0; i < m_.size(); ++i) {
-    shares.push_back(c_.air[i] * air + contact_.shares[i] * (1.0 - air));
-  }
-  return shares;
-}
-
-// What is left in the liquid at closing: filling losses off, its oxygen as measured.
-Contents Solver::at_closing(Contents reached) const {
-  for (const auto& loss : c_.container->filling_loss) {
-    reached[loss.gas] = std::max(reached[loss.gas] - molality(loss), Molality{});
-  }
-  if (c_.container->closing_oxygen) {
-    reached[c_.container->closing_oxygen->gas] = molality(*c_.container->closing_oxygen);
-  }
-  return reached;
-}
-
-OrRefusal<Closing> Solver::closing_with(const Contents& reached) const {
-  const auto& given = *c_.container;
-  Closing closing;
-  closing.temperature =
-      given.closing_temperature ? given.closing_temperature->now() : contact_.at.t;
-  closing.pressure = closing_pressure();
-  closing.contents = at_closing(reached);
-  if (given.fill) closing.fill = given.fill->now();
-  if (given.fill_mass) closing.fill_mass = given.fill_mass->now();
-  closing.brimful = given.brimful.now();
-  const auto at = at_temperature(m_, liquid_, closing.temperature);
-  if (closing.pressure <= at.vapour) {
-    return Refusal{RefusalCode::boils, closing.pressure.value(), at.vapour.value()};
-  }
-  const auto headspace = closing.brimful - liquid_volume(m_, at, closing);
-  if (!(headspace.value() > 0)) {
-    return Refusal{RefusalCode::container_without_space, headspace.value(),
-                   closing.brimful.value()};
-  }
-  Fraction air = given.closing_air.now();
-  if (given.closing_air_volume) {
-    // Amounts at the same temperature: p_amb V_air of (p − p_v) V_H.
-    air = contact_.ambient * given.closing_air_volume->now() /
-          ((closing.pressure - at.vapour) * headspace);
-    if (air.value() > 1) {
-      return Refusal{RefusalCode::air_exceeds_headspace, air.value(), 1};
-    }
-  }
-  closing.headspace = headspace_at_closing(air);
-  if (given.nitrogen_dose) {
-    for (std::size_t i = 0; i < m_.size(); ++i) {
-      if (m_.gases[i].name == "N2") closing.nitrogen = i;
-    }
-    closing.nitrogen_dose =
-        given.nitrogen_dose->now() / m_.gases[closing.nitrogen].molar_mass.at(nullptr);
-  }
-  return closing;
-}
-
-std::optional<Refusal> Solver::answer_container() {
-  const auto closing = closing_with(contact_.contents);
-  if (const auto* no = refused(closing)) return *no;
-  const auto& closed = std::get<Closing>(closing);
-  filling_ = close(m_, liquid_, closed);
-  const auto found = equilibrium(m_, liquid_, filling_, closed.temperature);
-  if (const auto* no = refused(found)) return *no;
-  closed_ = std::get<ClosedState>(found);
-  answer_.container.push_back(container_figures(*closed_));
-  if (trace_ != nullptr) trace_container(*closed_);
-  return std::nullopt;
-}
-
-// Rating less the package's pressure; without a rating, nothing to be asked.
-Pressure Solver::margin(const ClosedState& state) const {
-  if (c_.container->rated_gauge) {
-    return *c_.container->rated_gauge - gauge(state.pressure, contact_.ambient);
-  }
-  return c_.container->rated_absolute ? *c_.container->rated_absolute - state.pressure : Pressure{};
-}
-
-ContainerFigures Solver::container_figures(const ClosedState& state) const {
-  ContainerFigures f;
-  f.temperature = state.at.t;
-  f.pressure_absolute = state.pressure;
-  f.pressure_gauge = gauge(state.pressure, contact_.ambient);
-  f.ullage = state.headspace / filling_.brimful;
-  if (c_.container->rated_gauge || c_.container->rated_absolute) f.margin = margin(state);
-  f.vapour = state.at.vapours.water;
-  if (liquid_.x_ethanol.value() > 0) f.ethanol = state.at.vapours.ethanol;
-  for (std::size_t i = 0; i < m_.size(); ++i) {
-    if (c_.in_container[i] == 0) continue;
-    f.gases.push_back(
-        gas_figures(i, state.contents, state.mixture, state.pressure, state.at.vapour));
-  }
-  return f;
-}
-
 std::optional<Refusal> Solver::answer_opening() {
   Opened opened;
   const auto& wanted = c_.opening->temperature;
   if (c_.container) {
-    ClosedState state = *closed_;
-    if (wanted) {
+    if (!wanted && unsettled_) return *unsettled_;
+    ClosedState state;
+    if (!wanted) {
+      state = *closed_;
+    } else {
       const auto found = equilibrium(m_, liquid_, filling_, wanted->now());
       if (const auto* no = refused(found)) return *no;
       state = std::get<ClosedState>(found);
@@ -407,8 +324,7 @@ std::optional<Refusal> Solver::answer_opening() {
     if (trace_ != nullptr) opened_state_ = state;
     answer_.opening_pressure = gauge(state.pressure, contact_.ambient);
     answer_.opening_margin = margin(state);
-    if (!c_.container->rated_gauge && !c_.container->rated_absolute)
-      answer_.opening_margin.asked = false;
+    if (!rated()) answer_.opening_margin.asked = false;
     opened = open_package(m_, filling_, state, contact_.ambient, c_.air);
   } else {
     const auto t = wanted ? wanted->now() : contact_.at.t;

@@ -48,13 +48,6 @@ void Solver::trace_temperature(const SaturationFigures& s, std::size_t gas) {
   apply(trace_, SolvedTemperature{t}, b, contact_.pressure);
 }
 
-void Solver::trace_container(const ClosedState& state) {
-  trace_->begin("container.at.0.pressure_gauge");
-  const auto b = trace_state(state);
-  const auto p = apply(trace_, SolvedPressure{state.pressure}, b, state.at.t);
-  apply(trace_, AbsoluteToGauge{}, p, ambient(trace_));
-}
-
 // Every gas of a closed state, and the gas in its headspace; returns the content of the gas that
 // leads it (CO2 where there is some).
 Molality Solver::trace_state(const ClosedState& state) {
@@ -66,6 +59,10 @@ Molality Solver::trace_state(const ClosedState& state) {
     const auto b = content(trace_, m_, at, mix(m_, at, shares), state.pressure, i);
     if (leading.value() == 0 || i == m_.co2) leading = b;
   }
+  if (c_.container->typical_stretch && !c_.container->stretch) {
+    c_.container->typical_stretch->at(trace_);
+  }
+  stretched(trace_, filling_.shell, state.pressure);
   gas_in_headspace(trace_, m_, state, state.pressure);
   return leading;
 }

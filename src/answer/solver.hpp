@@ -1,5 +1,5 @@
-// The solver behind solve(): one case at its current z. Split over two files: the answers, and
-// their traces.
+// The solver behind solve(): one case at its current z. Split over several files: the contact and
+// the opening, the closed package, and their traces.
 #pragma once
 
 #include <optional>
@@ -9,6 +9,7 @@
 #include "capsigh/balance/closed_container.hpp"
 #include "capsigh/balance/contact.hpp"
 #include "capsigh/balance/opening.hpp"
+#include "capsigh/balance/shelf.hpp"
 
 namespace capsigh::answer_detail {
 
@@ -47,7 +48,8 @@ class Solver {
   Contents taken_up(const AtTemperature& at, const GasMixture& mixture, Pressure headspace) const;
   OrRefusal<Pressure> headspace_for(std::size_t gas, Molality wanted) const;
   OrRefusal<Pressure> headspace_for_package(std::size_t gas, Molality wanted) const;
-  OrRefusal<ClosedState> settled_package(Pressure headspace) const;
+  OrRefusal<ClosedState> settled_package(const AtTemperature& closing_at,
+                                         const AtTemperature& settled_at, Pressure headspace) const;
   OrRefusal<Pressure> pressure_for_target(std::size_t gas, Molality wanted) const;
   Maybe find_blend();
   double pressure_of_pure(const AtTemperature& at, const ContentCase& wish) const;
@@ -64,11 +66,39 @@ class Solver {
   Pressure closing_pressure() const;
   Shares headspace_at_closing(Fraction air) const;
   Contents at_closing(Contents reached) const;
-  OrRefusal<Closing> closing_with(const Contents& reached) const;
+  Temperature closing_temperature() const;
+  OrRefusal<Closing> closing_with(const AtTemperature& at, const Contents& reached,
+                                  std::optional<Volume> fill = std::nullopt) const;
+  Compliance stretch() const;
+  bool rated() const;
   Maybe answer_container();
+  Maybe answer_at(Temperature t);
+  Maybe answer_storage(Temperature t);
+  void answer_closing();
+  void answer_inverses();
+  double room_to_rating(const ClosedState& state) const;
+  void answer_safe_temperature();
+  void answer_liquid_full();
+  void answer_largest_fill();
+  Temperature hottest() const;
+  double room_for_fill(const AtTemperature& hottest, double fill) const;
+  std::size_t oxygen() const;
+  const ContentCase* limit_of(std::size_t gas) const;
+  void answer_oxygen();
+  Volume allowed_air(Trace* trace, const ContentCase& limit) const;
+  WallLeaks leaks_at(const AtTemperature& at, Trace* trace) const;
+  void answer_shelf();
+  Pressure filled_partial(std::size_t gas) const;
+  CoursePoint course_point(const ShelfCourse& course) const;
+  void shelf_life(const ClosedState& state, ShelfLifeFigures& figures) const;
+  static void first_limit(ShelfLifeFigures& figures);
+  void trace_package();
+  void trace_inverses();
+  void trace_oxygen();
+  void trace_shelf();
   Pressure margin(const ClosedState& state) const;
   ContainerFigures container_figures(const ClosedState& state) const;
-  void trace_container(const ClosedState& state);
+  void trace_gauge(const ClosedState& state);
   Molality trace_state(const ClosedState& state);
   Maybe answer_opening();
   Maybe answer_wine();
@@ -84,8 +114,12 @@ class Solver {
   Liquid liquid_;
   Fraction found_{};  // share of the line that is solved for
   ContactState contact_;
+  AtTemperature at_closing_;
+  Closing closing_;
   Filling filling_;
-  std::optional<ClosedState> closed_;
+  boost::container::static_vector<std::optional<ClosedState>, kMaxStorage> settled_;
+  std::optional<ClosedState> closed_;        // the first of them
+  std::optional<Refusal> unsettled_;         // why there is none
   std::optional<ClosedState> opened_state_;  // for the trace
   Answer answer_;
 };

@@ -17,10 +17,11 @@ double swelling(const AtTemperature& at, const Contents& contents) {
   return sum;
 }
 
-Volume headspace_of(const Filling& filling, const AtTemperature& at, const Contents& contents) {
+Volume headspace_of(const Filling& filling, const AtTemperature& at, const Contents& contents,
+                    Pressure p) {
   const double liquid =
       filling.liquid.value() * (1.0 / at.density.value() + swelling(at, contents));
-  return filling.brimful - from_si<Volume>(liquid);
+  return stretched(nullptr, filling.shell, p) - from_si<Volume>(liquid);
 }
 
 Fraction compressibility(Trace* trace, const Medium& m, const AtTemperature& at,
@@ -40,64 +41,114 @@ Shares shares_by_amount(const PerGas<Amount>& amounts) {
   return shares;
 }
 
-// The distribution of the conserved moles at one trial pressure: the shares are iterated until they
-// stand (they enter their own equilibrium only through non-ideality and swelling, so it is quick).
-class TrialPressure {
+// The distribution of the conserved moles over liquid and headspace at a trial pressure.
+class Distribution {
  public:
-  TrialPressure(const Medium& m, const Filling& filling, const AtTemperature& at)
+  Distribution(const Medium& m, const Filling& filling, const AtTemperature& at)
       : m_(m), filling_(filling), shares_(shares_by_amount(filling.amounts)) {
     state_.at = at;
   }
 
-  // Σ y_i − 1: above zero where the moles need more pressure.
-  double operator()(double pascal) {
-    state_.pressure = from_si<Pressure>(pascal);
-    double excess = 0;
-    constexpr int most_rounds = 200;
-    constexpr double settled = 1e-14;
-    for (int round = 0; round < most_rounds; ++round) {
-      const double change = redistribute(excess);
-      if (change < settled) break;
+  void start_from(const Shares& shares) { shares_ = shares; }
+
+  // One round at p, Pa: the total pressure less p that the moles need at the present shares, which
+  // are then brought up to date.
+  double round(double p) {
+    state_.pressure = from_si<Pressure>(p);
+    state_.mixture = mix(m_, state_.at, shares_);
+    state_.contents = contents(m_, state_.at, state_.mixture, state_.pressure);
+    state_.headspace = headspace_of(filling_, state_.at, state_.contents, state_.pressure);
+    state_.z = compressibility(nullptr, m_, state_.at, state_.mixture, state_.pressure);
+    const double dry = p - state_.at.vapour.value();
+    const double gas = gas_in_headspace(nullptr, m_, state_, state_.pressure).value();
+    const double room = std::max(gas, 0.0) / dry;  // mol per Pa of partial pressure
+    const double liquid = filling_.liquid.value();
+    PerGas<double> partial;
+    double sum = 0;
+    for (std::size_t i = 0; i < shares_.size(); ++i) {
+      const double share = shares_[i].value();
+      // Of a gas without a share nothing is known to dissolve; it has no moles either.
+      const double dissolves =
+          share > 0 ? state_.contents[i].value() * liquid / (share * dry) : 0.0;
+      partial.push_back(share > 0 ? filling_.amounts[i].value() / (dissolves + room) : 0.0);
+      sum += partial.back();
     }
-    return excess;
+    change_ = 0;
+    for (std::size_t i = 0; i < shares_.size(); ++i) {
+      const Fraction share(partial[i] / sum);
+      change_ = std::max(change_, std::abs((share - shares_[i]).value()));
+      shares_[i] = share;
+    }
+    return state_.at.vapour.value() + sum - p;
+  }
+
+  // The same with the shares settled.
+  double settled_round(double p) {
+    constexpr int most_rounds = 200;
+    double missing = round(p);
+    for (int i = 0; i < most_rounds && change_ > kSettled; ++i) missing = round(p);
+    return missing;
+  }
+
+  // Secant steps with the shares on the way; nullopt where they do not come to rest inside the
+  // model.
+  std::optional<double> quick_root(double start) {
+    constexpr int most_rounds = 40;
+    const double least = state_.at.vapour.value();
+    const double most = m_.pressure_limit.value();
+    double before = start;
+    double missing_before = round(before);
+    double p = std::clamp(before + missing_before, 0.5 * (least + before), 0.5 * (most + before));
+    for (int i = 0; i < most_rounds; ++i) {
+      const double missing = round(p);
+      if (std::abs(missing) <= kSettled * p && change_ <= kSettled) return p;
+      const double slope = (missing - missing_before) / (p - before);
+      const double next = slope < 0 ? p - missing / slope : p + missing;
+      before = p;
+      missing_before = missing;
+      if (!(next > least && next < most) || next == p) return std::nullopt;
+      p = next;
+    }
+    return std::nullopt;
   }
 
   [[nodiscard]] const ClosedState& state() const { return state_; }
 
  private:
-  double redistribute(double& excess) {
-    state_.mixture = mix(m_, state_.at, shares_);
-    state_.contents = contents(m_, state_.at, state_.mixture, state_.pressure);
-    state_.headspace = headspace_of(filling_, state_.at, state_.contents);
-    state_.z = compressibility(nullptr, m_, state_.at, state_.mixture, state_.pressure);
-    const double gas = gas_in_headspace(nullptr, m_, state_, state_.pressure).value();
-    Shares next;
-    double sum = 0;
-    for (std::size_t i = 0; i < shares_.size(); ++i) {
-      const double share = shares_[i].value();
-      const double dissolved_per_share =
-          share > 0 ? state_.contents[i].value() / share * filling_.liquid.value() : 0.0;
-      const double held = dissolved_per_share + std::max(gas, 0.0);
-      next.emplace_back(share > 0 ? filling_.amounts[i].value() / held : 0.0);
-      sum += next.back().value();
-    }
-    double change = 0;
-    for (std::size_t i = 0; i < shares_.size(); ++i) {
-      const Fraction share = next[i] / sum;
-      change = std::max(change, std::abs((share - shares_[i]).value()));
-      shares_[i] = share;
-    }
-    excess = sum - 1.0;
-    return change;
-  }
-
+  static constexpr double kSettled = 1e-14;  // relative: differences at z = ±1 stay clean
   const Medium& m_;
   const Filling& filling_;
   Shares shares_;
   ClosedState state_;
+  double change_ = 0;
 };
 
+// The state of the moles at equilibrium, whether or not a headspace is left. nullopt: beyond the
+// gas law.
+std::optional<ClosedState> distributed(const Medium& m, const Filling& filling,
+                                       const AtTemperature& at, const ClosedState* near) {
+  Distribution distribution(m, filling, at);
+  if (near != nullptr) distribution.start_from(near->mixture.shares);
+  const double start = near != nullptr ? std::max(near->pressure.value(), 1.01 * at.vapour.value())
+                                       : at.vapour.value() + m.atmosphere.value();
+  if (distribution.quick_root(start)) return distribution.state();
+  const auto missing = [&](double pascal) { return distribution.settled_round(pascal); };
+  // Just above the vapour pressure the moles need more than there is; at the limit of the model
+  // they need less, or the package is beyond it.
+  distribution.start_from(shares_by_amount(filling.amounts));
+  const double low = at.vapour.value() * (1.0 + 1e-9);
+  const auto root = root_between(missing, low, m.pressure_limit.value());
+  if (!root) return std::nullopt;
+  distribution.settled_round(*root);
+  return distribution.state();
+}
+
 }  // namespace
+
+Volume stretched(Trace* trace, const Shell& shell, Pressure p) {
+  if (!(shell.stretch.value() > 0)) return shell.brimful;
+  return apply(trace, StretchedVolume{}, shell.brimful, shell.stretch, gauge(p, shell.ambient));
+}
 
 Amount gas_in_headspace(Trace* trace, const Medium& m, const ClosedState& state, Pressure p) {
   return apply(trace, GasInHeadspace{m.r}, p, state.at.vapour, state.headspace,
@@ -129,12 +180,17 @@ Volume liquid_volume(const Medium& m, const AtTemperature& at, const Closing& cl
 }
 
 Filling close(const Medium& m, const Liquid& liquid, const Closing& closing) {
+  return close(m, at_temperature(m, liquid, closing.temperature), closing);
+}
+
+Filling close(const Medium& m, const AtTemperature& at, const Closing& closing) {
   ClosedState state;
-  state.at = at_temperature(m, liquid, closing.temperature);
+  state.at = at;
   state.mixture = mix(m, state.at, closing.headspace);
-  state.headspace = closing.brimful - liquid_volume(m, state.at, closing);
+  state.headspace =
+      stretched(nullptr, closing.shell, closing.pressure) - liquid_volume(m, state.at, closing);
   Filling filling;
-  filling.brimful = closing.brimful;
+  filling.shell = closing.shell;
   filling.liquid = degassed(m, state.at, closing);
   const Amount gas = gas_in_headspace(nullptr, m, state, closing.pressure);
   for (std::size_t i = 0; i < m.size(); ++i) {
@@ -146,26 +202,44 @@ Filling close(const Medium& m, const Liquid& liquid, const Closing& closing) {
   return filling;
 }
 
-OrRefusal<ClosedState> equilibrium(const Medium& m, const Liquid& liquid, const Filling& filling,
-                                   Temperature t) {
-  const AtTemperature at = at_temperature(m, liquid, t);
-  TrialPressure trial(m, filling, at);
-  const auto residual = [&](double pascal) { return trial(pascal); };
-  // Just above the vapour pressure the shares needed to hold the moles exceed one; at the limit of
-  // the model they fall below it, or the package is beyond it.
-  const double low = at.vapour.value() * (1.0 + 1e-9);
-  const auto root = root_between(residual, low, m.pressure_limit.value());
-  if (!root) {
+OrRefusal<ClosedState> equilibrium(const Medium& m, const Filling& filling, const AtTemperature& at,
+                                   const ClosedState* near) {
+  const auto state = distributed(m, filling, at, near);
+  if (!state) {
     return Refusal{RefusalCode::pressure_beyond_model, m.pressure_limit.value(),
                    m.pressure_limit.value()};
   }
-  trial(*root);
-  const ClosedState& state = trial.state();
-  if (!(state.headspace.value() > 0)) {
-    return Refusal{RefusalCode::container_without_space, state.headspace.value(),
-                   filling.brimful.value()};
+  if (!(state->headspace.value() > 0)) {
+    return Refusal{RefusalCode::container_without_space, state->headspace.value(),
+                   filling.shell.brimful.value()};
   }
-  return state;
+  return *state;
+}
+
+OrRefusal<ClosedState> equilibrium(const Medium& m, const Liquid& liquid, const Filling& filling,
+                                   Temperature t) {
+  return equilibrium(m, filling, at_temperature(m, liquid, t));
+}
+
+std::optional<Temperature> liquid_full_temperature(const Medium& m, const Liquid& liquid,
+                                                   const Filling& filling, Temperature from,
+                                                   Temperature to) {
+  // Beyond the gas law a rigid package counts as full: its state is not known.
+  const auto headspace = [&](double kelvin) {
+    const auto at = at_temperature(m, liquid, from_si<Temperature>(kelvin));
+    const auto state = distributed(m, filling, at, nullptr);
+    return state ? state->headspace.value() : -filling.shell.brimful.value();
+  };
+  const auto root = root_between(headspace, from.kelvin(), to.kelvin());
+  if (!root) return std::nullopt;
+  // At the end of the gas law there is a jump, and no temperature at which the package is full.
+  const auto state =
+      distributed(m, filling, at_temperature(m, liquid, from_si<Temperature>(*root)), nullptr);
+  constexpr double touching = 1e-6;  // of the brimful volume
+  if (!state || std::abs(state->headspace.value()) > touching * filling.shell.brimful.value()) {
+    return std::nullopt;
+  }
+  return from_si<Temperature>(*root);
 }
 
 }  // namespace capsigh

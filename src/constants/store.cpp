@@ -47,6 +47,7 @@ constexpr auto kConstantUnits = std::to_array<ConstantUnit>({
     {"g/g", 1},
     {"%/bar", 1e-2 / 1e5},
     {"mL/d", 1e-6 / 86400},
+    {"wk", 7.0 * 86400},
     {"m/s", 1},
     {"1/s", 1},
     {"kg/m3", 1},

@@ -122,6 +122,11 @@ constexpr auto kUnits = std::to_array<Unit>({
     {"1/min", rate, 1 / kMinute},
     {"1/h", rate, 1 / kHour},
     {"1/d", rate, 1 / kDay},
+    {"%/bar", stretch, 1e-2 / 1e5},
+    {"%/psi", stretch, 1e-2 / kPsi},
+    {"mL/d", transmission, 1e-6 / kDay},
+    {"cm3/d", transmission, 1e-6 / kDay},
+    {"uL/d", transmission, 1e-9 / kDay},
 });
 
 }  // namespace
@@ -158,6 +163,8 @@ std::string_view dimension_name(Dimension d) {
     case volume_flow: return "volume flow";
     case normal_volume_flow: return "normal volume flow of gas";
     case rate: return "rate";
+    case stretch: return "stretch";
+    case transmission: return "transmission of gas";
   }
   return "quantity";
 }

@@ -159,6 +159,16 @@ class Reader {
     if (const Node* group = subgroup(s, "filling_loss", "filling_loss = { CO2 = \"0.05 vol\" }")) {
       container.filling_loss = section(*group, "container.filling_loss").contents();
     }
+    container.kind = s.text("kind", "can");
+    container.stretch = s.stretch("stretch", "0.4 %/bar");
+    container.storage = s.temperatures("storage", "4 degC");
+    container.minimum_ullage = s.share("minimum_ullage", "3 %");
+    if (const Node* group = subgroup(s, "wall", "wall = { CO2 = \"1.1 mL/d\" }")) {
+      container.wall = section(*group, "container.wall").transmissions();
+    }
+    if (const Node* group = subgroup(s, "limit", "limit = { CO2 = \"3.4 vol\" }")) {
+      container.limit = section(*group, "container.limit").contents();
+    }
     s.finish();
     recipe_.container = std::move(container);
   }

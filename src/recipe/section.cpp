@@ -337,6 +337,48 @@ std::vector<GivenContent> Section::contents() {
   return all;
 }
 
+std::vector<Given<Temperature>> Section::temperatures(const std::string& key,
+                                                      std::string_view example) {
+  const Member* member = take(key);
+  if (member == nullptr) return {};
+  const Node& node = member->value;
+  std::vector<Given<Temperature>> all;
+  const auto read = [&](const Node& item) {
+    const Member one{key, member->key_place, item};
+    all.push_back(given<Temperature>(one, Dimension::temperature, example, false, Sign::positive));
+  };
+  if (node.kind == Node::Kind::text) {
+    read(node);
+  } else if (node.kind == Node::Kind::array && !node.items.empty()) {
+    for (const auto& item : node.items) read(item);
+  } else {
+    const bool empty = node.kind == Node::Kind::array;
+    complain(node.place, "not-a-list",
+             empty ? fmt::format("'{}' lists nothing", full_key(key))
+                   : fmt::format("'{}' is {}, not a list of temperatures", full_key(key),
+                                 kind_name(node.kind)),
+             "temperatures in brackets", fmt::format("{} = [\"{}\", \"20 degC\"]", key, example));
+  }
+  return all;
+}
+
+std::optional<Given<Compliance>> Section::stretch(const std::string& key,
+                                                  std::string_view example) {
+  const Member* member = take(key);
+  if (member == nullptr) return std::nullopt;
+  return given<Compliance>(*member, Dimension::stretch, example, false, Sign::not_negative);
+}
+
+std::vector<GivenTransmission> Section::transmissions() {
+  std::vector<GivenTransmission> all;
+  for (const auto& member : table_.members) {
+    all.push_back(
+        {{member.key, member.key_place},
+         given<Transmission>(member, Dimension::transmission, "0.02 mL/d", false, Sign::positive)});
+  }
+  return all;
+}
+
 std::vector<GivenShare> Section::shares() {
   std::vector<GivenShare> all;
   for (const auto& member : table_.members) {

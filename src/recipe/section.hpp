@@ -43,6 +43,11 @@ class Section {
   std::vector<GivenSolute> salts();
   /// Every key of this section as a content of the gas it names.
   std::vector<GivenContent> contents();
+  /// A key that is a list of temperatures, or one of them.
+  std::vector<Given<Temperature>> temperatures(const std::string& key, std::string_view example);
+  std::optional<Given<Compliance>> stretch(const std::string& key, std::string_view example);
+  /// Every key of this section as what passes a wall of the gas it names.
+  std::vector<GivenTransmission> transmissions();
   /// Every key of this section as a share of the gas it names.
   std::vector<GivenShare> shares();
   /// Every key of this section as free text.

@@ -12,16 +12,16 @@ namespace {
 using Json = nlohmann::ordered_json;
 
 bool is_index(std::string_view part) {
-  return !part.empty() && std::isdigit(static_cast<unsigned char>(part.front())) != 0 &&
-         part.size() == 1;
+  return !part.empty() && std::all_of(part.begin(), part.end(),
+                                      [](unsigned char c) { return std::isdigit(c) != 0; });
 }
 
-// The object a path leads to, made on the way; a digit is a place in an array.
+// The object a path leads to, made on the way; digits are a place in an array.
 Json& descend(Json& root, const FigurePath& path) {
   Json* at = &root;
   for (const auto part : path) {
     if (is_index(part)) {
-      const auto index = static_cast<std::size_t>(part.front() - '0');
+      const auto index = std::stoul(std::string(part));
       if (at->is_null()) *at = Json::array();
       while (at->size() <= index) at->push_back(Json());
       at = &(*at)[index];
@@ -138,6 +138,11 @@ Json one(const Report& report, bool with_trace) {
   each_figure(report.answer, [&](const FigurePath& path, const auto& figure, const JsonUnit& unit) {
     if (figure.asked) descend(j, path) = quantity(figure, unit);
   });
+  const auto& shelf_life = report.answer.package.shelf_life;
+  for (std::size_t i = 0; i < shelf_life.size(); ++i) {
+    if (!shelf_life[i].until_limit.asked) continue;
+    j["container"]["shelf_life"][i]["gas"] = shelf_life[i].gas;
+  }
   for (const auto& t : report.judged) {
     auto& target = j["target"][t.gas];
     target["verdict"] = t.verdict == Verdict::inside    ? "inside"

@@ -4,6 +4,7 @@
 
 #include "capsigh/quantity/grammar.hpp"
 #include "capsigh/render/render.hpp"
+#include "text_package.hpp"
 #include "text_page.hpp"
 
 namespace capsigh {
@@ -26,7 +27,8 @@ class TextReport {
     asked();
     answer();
     condition();
-    container();
+    render_detail::package_states(page_, a_.package);
+    render_detail::package_shelf(page_, a_.package);
     opening();
     page_.doubts(r_);
     page_.drawn(r_);
@@ -72,15 +74,12 @@ class TextReport {
       for (const auto& g : a_.gases) page_.gas(g);
     }
     if (!r_.solved_for_pressure && a_.blend.empty()) saturation();
-    for (const auto& c : a_.container) {
-      page_.pressures("In the closed package", c.pressure_gauge, c.pressure_absolute);
-      rating(c.margin, c.temperature);
-    }
+    render_detail::package_answer(page_, r_);
     if (a_.opening_pressure.asked && differs_from_container(a_.opening_temperature)) {
       page_.line("  when opened",
                  page_.in_units(a_.opening_pressure, Dimension::pressure, "bar", " gauge"),
                  "at " + page_.celsius(a_.opening_temperature));
-      rating(a_.opening_margin, a_.opening_temperature);
+      render_detail::rating(page_, a_.opening_margin, a_.opening_temperature);
     }
     for (const auto& j : r_.judged) page_.judged(j);
     if (a_.wine_gauge.asked) {
@@ -92,15 +91,8 @@ class TextReport {
   }
 
   [[nodiscard]] bool differs_from_container(const Figure<Temperature>& t) const {
-    return a_.container.empty() || !(a_.container.front().temperature.value == t.value);
-  }
-
-  // A rating says nothing without the temperature.
-  void rating(const Figure<Pressure>& margin, const Figure<Temperature>& at) {
-    if (!margin.asked) return;
-    const bool above = margin.value.value() < 0;
-    page_.line(above ? "  ABOVE ITS RATING, margin" : "  below its rating by",
-               page_.in_units(margin, Dimension::pressure, "bar"), "at " + page_.celsius(at));
+    const auto& at = a_.package.at;
+    return at.empty() || !(at.front().temperature.value == t.value);
   }
 
   void condition() {
@@ -163,17 +155,6 @@ class TextReport {
     }
   }
 
-  void container() {
-    if (a_.container.empty()) return;
-    page_.section("In the closed package, at equilibrium");
-    for (const auto& c : a_.container) {
-      page_.line("Temperature", page_.celsius(c.temperature));
-      page_.pressures("Pressure", c.pressure_gauge, c.pressure_absolute);
-      page_.line("Ullage", shown(c.ullage, unit("%", Dimension::fraction), " of brimful"));
-      for (const auto& g : c.gases) page_.gas(g);
-    }
-  }
-
   void opening() {
     if (a_.opening.empty()) return;
     const auto at = page_.celsius(a_.opening_temperature);
@@ -182,7 +163,7 @@ class TextReport {
       const bool co2 = loss.gas.empty();
       const std::string_view in = co2 ? "g" : "mg";
       const std::string name = co2 ? "CO2" : std::string(loss.gas);
-      if (!a_.container.empty()) loss_line(name + " from the headspace", loss.headspace_loss, in);
+      if (!a_.package.at.empty()) loss_line(name + " from the headspace", loss.headspace_loss, in);
       loss_line(name + " as fizz", loss.fizz_loss, in);
       loss_line(name + " going flat in air", loss.flat_loss, in);
     }

@@ -78,6 +78,12 @@ std::pair<Dimension, std::string_view> TextPage::shown_as(const JsonUnit& json) 
       Shown{"g/L", Dimension::mass_concentration, "g/L"},
       Shown{"mol/L", Dimension::amount_concentration, "mol/L"},
       Shown{"mg/kg", Dimension::mass_fraction, "mg/kg"},
+      Shown{"mg/L", Dimension::mass_concentration, "mg/L"},
+      Shown{"g", Dimension::mass, "g"},
+      Shown{"ug", Dimension::mass, "ug"},
+      Shown{"mL", Dimension::volume, "mL"},
+      Shown{"d", Dimension::duration, "wk"},
+      Shown{"s", Dimension::duration, "s"},
   };
   const auto it = std::find_if(table.begin(), table.end(),
                                [&](const Shown& row) { return row.ucum == json.ucum; });

@@ -24,6 +24,16 @@ const std::vector<std::string> kForms = {
     "[contact]\npressure = \"2 bar gauge ± 0.1 bar\"\ndissolved = { CO2 = \"6 g/L\" }\n",
     "[gas]\nN2 = \"100 %\"\n[contact]\ntemperature = \"4 degC\"\npressure = \"2 bar abs\"\n"
     "[opening]\n",
+    "[contact]\ntemperature = \"4 degC ± 0.3 K\"\npressure = \"1.6 bar gauge ± 0.05 bar\"\n"
+    "[container]\nkind = \"PET bottle\"\nbrimful = \"525 mL\"\nfill = \"500 mL ± 2 mL\"\n"
+    "rated = \"6 bar gauge\"\nclosed_at = { air = \"30 % ± 5 %\" }\n"
+    "storage = [\"4 degC ± 1 K\", \"25 degC ± 2 K\"]\nminimum_ullage = \"3 %\"\n"
+    "limit = { CO2 = \"3 vol\", O2 = \"8 mg/L\" }\n",
+    "[contact]\ntemperature = \"4 degC\"\npressure = \"1.6 bar gauge\"\n"
+    "[container]\nstretch = \"0.4 %/bar ± 0.1 %/bar\"\nbrimful = \"345 mL\"\nfill = \"330 mL\"\n"
+    "storage = \"25 degC\"\nwall = { CO2 = \"3 mL/d ± 0.5 mL/d\", O2 = \"0.04 mL/d ± 0.01 mL/d\" "
+    "}\n"
+    "limit = { CO2 = \"3 vol\" }\n",
 };
 
 std::vector<double> figures(const Case& c) {

@@ -14,7 +14,7 @@ const std::string kCan = "[container]\nbrimful = \"345 mL\"\nfill = \"330 mL\"\n
 
 double vol(const Report& r) { return si_value(r.answer.gases.at(0).volumes.value); }
 double package(const Report& r) {
-  return si_value(r.answer.container.at(0).pressure_gauge.value) / 1e5;
+  return si_value(r.answer.package.at.at(0).pressure_gauge.value) / 1e5;
 }
 
 }  // namespace
@@ -63,7 +63,7 @@ TEST_CASE("a target at the package is held by the package") {
       "[contact]\ntemperature = \"4 degC\"\n[target]\nCO2 = \"3.7 vol\"\n"
       "at = \"package\"\n" +
       kCan);
-  CHECK(within_relative(si_value(r.answer.container.at(0).gases.at(0).volumes.value), 3.7, 1e-9));
+  CHECK(within_relative(si_value(r.answer.package.at.at(0).gases.at(0).volumes.value), 3.7, 1e-9));
   CHECK(vol(r) > 3.7);
 }
 
@@ -97,7 +97,7 @@ TEST_CASE("filling loss, dissolved oxygen and nitrogen dose enter the package") 
   const auto oxygen =
       answered(kContact + kCan + "closed_at = { dissolved_oxygen = \"30 ug/L\" }\n");
   double found = 0;
-  for (const auto& g : oxygen.answer.container[0].gases) {
+  for (const auto& g : oxygen.answer.package.at[0].gases) {
     if (g.gas == "O2") found = si_value(g.mass_concentration.value);
   }
   CHECK(found > 0);
@@ -110,14 +110,14 @@ TEST_CASE("filling loss, dissolved oxygen and nitrogen dose enter the package") 
 
 TEST_CASE("a package closed warmer than its contact") {
   const auto r = answered(kContact + kCan + "closed_at = { temperature = \"12 degC\" }\n");
-  CHECK(si_value(r.answer.container[0].temperature.value) == 285.15);
+  CHECK(si_value(r.answer.package.at[0].temperature.value) == 285.15);
   CHECK(package(r) > package(answered(kContact + kCan)));
 }
 
 TEST_CASE("a rating below the package is an answer, and said first") {
   const auto good = answered(kContact + kCan + "rated = \"6.2 bar gauge\"\n");
   CHECK(good.limits_met);
-  CHECK(si_value(good.answer.container[0].margin.value) > 0);
+  CHECK(si_value(good.answer.package.at[0].margin.value) > 0);
   const auto bad = answered(kContact + kCan + "rated = \"1 bar gauge\"\n");
   CHECK_FALSE(bad.limits_met);
   REQUIRE(!bad.cautions.empty());

@@ -22,10 +22,10 @@ double grams(const Figure<Mass>& m) { return si_value(m.value) * 1e3; }
 TEST_CASE("the reference can, closed at 4 degC") {
   // An independent calculation: 330 mL of water of 2.6 vol in a rigid 345 mL; within 1 %.
   const auto pure = answered(can("")).answer;
-  REQUIRE(pure.container.size() == 1);
-  CHECK(within_relative(si_value(pure.container[0].pressure_gauge.value) / 1e5, 0.775, 0.01));
+  REQUIRE(pure.package.at.size() == 1);
+  CHECK(within_relative(si_value(pure.package.at[0].pressure_gauge.value) / 1e5, 0.775, 0.01));
   const auto air = answered(can("closed_at = { air = \"30 %\" }\n")).answer;
-  CHECK(within_relative(si_value(air.container[0].pressure_gauge.value) / 1e5, 0.960, 0.01));
+  CHECK(within_relative(si_value(air.package.at[0].pressure_gauge.value) / 1e5, 0.960, 0.01));
 }
 
 namespace {
@@ -53,7 +53,7 @@ struct ReferenceCan {
     closing.headspace = headspace;
     closing.contents = contents(m, at, mixture, p);
     closing.fill = from_si<Volume>(330e-6);
-    closing.brimful = from_si<Volume>(345e-6);
+    closing.shell.brimful = from_si<Volume>(345e-6);
     filling = close(m, liquid_of(m), closing);
   }
 

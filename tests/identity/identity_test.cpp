@@ -143,7 +143,7 @@ TEST_CASE("every mole of every gas is found again in the closed package") {
     closing.headspace = headspace;
     closing.contents = contents(m, at, mixture, bar(1 + 3 * any(random)));
     closing.fill = from_si<Volume>(brimful * (0.5 + 0.45 * any(random)));
-    closing.brimful = from_si<Volume>(brimful);
+    closing.shell.brimful = from_si<Volume>(brimful);
     const auto filling = close(m, liquid_of(m), closing);
     const auto result = equilibrium(m, liquid_of(m), filling, celsius(t + 30 * any(random)));
     REQUIRE(std::holds_alternative<ClosedState>(result));

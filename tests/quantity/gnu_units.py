@@ -5,8 +5,9 @@ import sys
 # Our spelling -> theirs, and the SI unit of the dimension. Spelled out so that a new unit must be added here.
 SI = {"pressure": "Pa", "temperature": "K", "temperature difference": "K", "volume": "m^3", "length": "m", "mass": "kg",
       "fraction": "1", "volumes of gas": "1", "mass concentration": "kg/m^3", "amount concentration": "mol/m^3",
-      "molality": "mol/kg", "mass fraction": "1", "Brix or Plato": "1", "volume fraction": "1", "density": "kg/m^3", "time": "s",
-      "area": "m^2", "mass flow": "kg/s", "volume flow": "m^3/s", "normal volume flow of gas": "m^3/s", "rate": "1/s"}
+      "molality": "mol/kg", "mass fraction": "1", "Brix or Plato": "1", "volume fraction": "1",
+      "density": "kg/m^3", "time": "s", "area": "m^2", "mass flow": "kg/s", "volume flow": "m^3/s",
+      "normal volume flow of gas": "m^3/s", "rate": "1/s", "stretch": "1/Pa", "transmission of gas": "m^3/s"}
 THEIRS = {"bar": "bar", "barg": "bar", "bara": "bar", "mbar": "mbar", "hPa": "hPa", "kPa": "kPa", "MPa": "MPa",
           "Pa": "Pa", "psi": "psi", "psig": "psi", "psia": "psi", "atm": "atm", "mmHg": "mmHg", "inHg": "inHg",
           "K": "K", "degC": "degC", "°C": "degC", "degF": "degF", "°F": "degF", "m3": "m^3", "m³": "m^3",
@@ -21,7 +22,8 @@ THEIRS = {"bar": "bar", "barg": "bar", "bara": "bar", "mbar": "mbar", "hPa": "hP
           "min": "min", "h": "hour", "d": "day", "wk": "week", "m2": "m^2", "cm2": "cm^2", "kg/h": "kg/hour",
           "g/s": "g/s", "lb/h": "lb/hour", "m3/h": "m^3/hour", "hL/h": "hL/hour", "L/min": "L/min",
           "ft3/min": "ft^3/min", "m3/h normal": "m^3/hour", "1/s": "1/s", "1/min": "1/min", "1/h": "1/hour",
-          "1/d": "1/day"}
+          "1/d": "1/day", "%/bar": "percent/bar", "%/psi": "percent/psi", "mL/d": "mL/day", "cm3/d": "cm^3/day",
+          "uL/d": "uL/day"}
 
 
 def units(have, want):

@@ -4,6 +4,7 @@
 
 #include <optional>
 
+#include "capsigh/answer/package_case.hpp"
 #include "capsigh/balance/medium.hpp"
 #include "capsigh/models/atmosphere.hpp"
 #include "capsigh/quantity/uncertain.hpp"
@@ -16,15 +17,6 @@ struct AmbientCase {
   std::optional<Uncertain<Length>> altitude;
   StandardAtmosphere atmosphere;
   Uncertain<Pressure> stated;  ///< where there is no altitude
-};
-
-/// The content of one gas in the measure it was given in; the number is in SI units of it.
-struct ContentCase {
-  std::size_t gas = 0;
-  ContentMeasure measure = ContentMeasure::volumes;
-  Uncertain<Fraction> amount;
-  bool is_limit = false;  ///< of a target: a maximum or minimum, which nothing is solved for
-  Interval accepted;      ///< of a target: what conforms, in SI units of the measure
 };
 
 /// One line of the headspace's composition: a gas or a mixture, its share, and how that splits over
@@ -49,22 +41,6 @@ struct ContactCase {
   PerGas<ShareLine> gas;
   std::optional<Uncertain<Length>> depth;       ///< liquid above the point of contact
   std::optional<Uncertain<Fraction>> approach;  ///< of saturation actually reached
-};
-
-struct ContainerCase {
-  Uncertain<Volume> brimful;
-  std::optional<Uncertain<Volume>> fill;  ///< carbonated liquid at closing, or ...
-  std::optional<Uncertain<Mass>> fill_mass;
-  std::optional<Uncertain<Temperature>> closing_temperature;  ///< else the contact's
-  std::optional<Uncertain<Pressure>> closing_absolute;        ///< else by the gauge:
-  Uncertain<GaugePressure> closing_gauge;
-  Uncertain<Fraction> closing_air;                      ///< of the dry headspace, or ...
-  std::optional<Uncertain<Volume>> closing_air_volume;  ///< at closing temperature and ambient
-  std::optional<ContentCase> closing_oxygen;            ///< dissolved at closing
-  PerGas<ContentCase> filling_loss;
-  std::optional<Uncertain<Mass>> nitrogen_dose;
-  std::optional<GaugePressure> rated_gauge;
-  std::optional<Pressure> rated_absolute;
 };
 
 struct OpeningCase {

@@ -66,6 +66,9 @@ struct Report {
   bool solved_for_temperature = false;
   std::vector<std::pair<std::string, std::string>> targets;  ///< gas and content as asked
   std::vector<std::pair<std::string, std::string>> limits;   ///< gas and its max or min
+  bool stored = false;  ///< the recipe names storage temperatures
+  std::vector<std::pair<std::string, std::string>> package_limits;  ///< gas and limit as asked
+  std::string longest_shelf_life;  ///< up to which a limit is looked for
   std::vector<JudgedTarget> judged;
   std::vector<SecondOpinion> second_opinion;
   std::vector<BudgetLine> budget;

@@ -2,6 +2,7 @@
 #pragma once
 
 #include <boost/math/tools/toms748_solve.hpp>
+#include <cmath>
 #include <cstdint>
 #include <optional>
 
@@ -22,6 +23,30 @@ std::optional<double> root_between(F&& f, double low, double high) {
   const auto [a, b] = boost::math::tools::toms748_solve(
       f, low, high, at_low, at_high, boost::math::tools::eps_tolerance<double>(bits), evaluations);
   return 0.5 * (a + b);
+}
+
+/// The same root by secant steps from two points near it, each step a fraction of what a bracket
+/// costs; f gives no number (NaN) where it has none. nullopt where the steps do not come to rest
+/// between low and high: then root_between decides.
+template <class F>
+std::optional<double> root_near(F&& f, double x0, double x1, double low, double high) {
+  constexpr int most_steps = 12;
+  constexpr double settled = 1e-13;  // relative: a tenth of the noise a doubt is told from
+  double before = x0;
+  double at_before = f(before);
+  double x = x1;
+  for (int i = 0; i < most_steps; ++i) {
+    if (!(x > low && x < high)) return std::nullopt;
+    const double at_x = f(x);
+    if (at_x == 0) return x;
+    const double step = -at_x * (x - before) / (at_x - at_before);
+    if (!std::isfinite(step)) return std::nullopt;
+    before = x;
+    at_before = at_x;
+    x += step;
+    if (std::abs(step) <= settled * std::abs(x)) return x;
+  }
+  return std::nullopt;
 }
 
 }  // namespace capsigh

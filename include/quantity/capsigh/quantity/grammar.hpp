@@ -34,6 +34,8 @@ enum class Dimension {
   volume_flow,
   normal_volume_flow,  ///< of gas at 0 °C and 101.325 kPa, as volume of that state
   rate,                ///< per time
+  stretch,             ///< growth of a container's volume per pressure
+  transmission,        ///< of gas at 0 °C and 101.325 kPa through a wall
 };
 
 /// The name of a dimension in a sentence: "temperature".

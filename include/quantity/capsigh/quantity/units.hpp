@@ -42,6 +42,8 @@ using MolarEnergyUnit = detail::Per<si::energy, si::amount>;
 using SpecificVolumeUnit = detail::Per<si::volume, si::mass>;
 using AccelerationUnit = detail::Per<detail::Per<si::length, si::time>, si::time>;
 using LapseRateUnit = detail::Per<si::temperature, si::length>;
+using ComplianceUnit = detail::Per<si::dimensionless, si::pressure>;
+using TransmissionUnit = detail::Per<si::volume, si::time>;
 
 using Pressure = Quantity<si::pressure>;  ///< absolute, Pa; also a difference of pressures
 using TemperatureDifference = Quantity<si::temperature>;        ///< K, a vector
@@ -64,6 +66,9 @@ using MolarEnergy = Quantity<MolarEnergyUnit>;                  ///< J/mol
 using SpecificVolume = Quantity<SpecificVolumeUnit>;            ///< m³/kg
 using Acceleration = Quantity<AccelerationUnit>;                ///< m/s²
 using LapseRate = Quantity<LapseRateUnit>;                      ///< K/m
+using Compliance = Quantity<ComplianceUnit>;                    ///< 1/Pa, growth of a container
+/// Gas through a wall, m³/s of it at 0 °C and 101.325 kPa.
+using Transmission = Quantity<TransmissionUnit>;
 
 /// A quantity from its number in SI base units; the only door from plain doubles.
 template <class Q>
@@ -189,5 +194,13 @@ template <>
 inline constexpr std::string_view si_symbol<MolalHenryConstant> = "mol/(kg Pa)";
 template <>
 inline constexpr std::string_view si_symbol<SpecificVolume> = "m3/kg";
+template <>
+inline constexpr std::string_view si_symbol<Compliance> = "1/Pa";
+template <>
+inline constexpr std::string_view si_symbol<Transmission> = "m3/s";
+template <>
+inline constexpr std::string_view si_symbol<MolarEnergy> = "J/mol";
+template <>
+inline constexpr std::string_view si_symbol<Duration> = "s";
 
 }  // namespace capsigh

@@ -108,6 +108,12 @@ struct ContactSection {
   std::optional<Given<Fraction>> approach;
 };
 
+/// What passes the wall of a package, of one gas: its volume at 0 °C and 101.325 kPa per time.
+struct GivenTransmission {
+  LocatedText gas;
+  Given<Transmission> amount;
+};
+
 struct ContainerSection {
   Place place;
   std::optional<Given<Volume>> brimful;
@@ -121,6 +127,12 @@ struct ContainerSection {
   std::optional<GivenContent> closing_oxygen;  ///< dissolved in the liquid
   std::vector<GivenContent> filling_loss;
   std::optional<Given<Mass>> nitrogen_dose;
+  std::optional<LocatedText> kind;
+  std::optional<Given<Compliance>> stretch;
+  std::vector<Given<Temperature>> storage;
+  std::optional<Given<Fraction>> minimum_ullage;
+  std::vector<GivenTransmission> wall;
+  std::vector<GivenContent> limit;
 };
 
 struct OpeningSection {
