@@ -128,7 +128,7 @@ TEST_CASE("10,000 random packages") {
       before = state;
     }
   }
-  CHECK(answered_states > 30000);
+  CHECK(answered_states > 25000);
 }
 
 TEST_CASE("a package that fills with liquid is found, with the temperature") {
@@ -166,7 +166,7 @@ TEST_CASE("the safe temperature is where the rating is reached") {
 }
 
 TEST_CASE("the largest fill just keeps the ullage or the rating") {
-  for (const std::string rated : {"", "rated = \"5.6 bar gauge\"\n"}) {
+  for (const std::string rated : {"", "rated = \"4.8 bar gauge\"\n"}) {
     const std::string keys =
         rated + "minimum_ullage = \"3 %\"\nstorage = [\"4 degC\", \"50 degC\"]\n";
     const auto r = answered(can(keys));
@@ -178,7 +178,7 @@ TEST_CASE("the largest fill just keeps the ullage or the rating") {
         fmt::format("{:.12f}", ml) + " mL\"\n" + keys);
     const auto& hot = again.answer.package.at[1];
     const double ullage = std::abs(hot.ullage.value.value() - 0.03);
-    const double rest = rated.empty() ? 1 : std::abs(gauge_bar(hot) - 5.6);
+    const double rest = rated.empty() ? 1 : std::abs(gauge_bar(hot) - 4.8);
     CHECK(std::min(ullage, rest) < 1e-9);  // of a root at 1e-12
   }
 }
