@@ -31,7 +31,7 @@ TEST_CASE("with a bottle it is the bottle's") {
       "[liquid]\nlike = \"sparkling wine\"\n[contact]\ntemperature = \"8 degC\"\n"
       "pressure = \"3.2 bar gauge\"\n[container]\nbrimful = \"775 mL\"\nfill = \"750 mL\"\n"
       "closed_at = { temperature = \"20 degC\" }\n");
-  REQUIRE(r.answer.container.size() == 1);
+  REQUIRE(r.answer.package.at.size() == 1);
   CHECK(within_relative(si_value(r.answer.wine_gauge.value),
-                        si_value(r.answer.container[0].pressure_gauge.value), 1e-10));
+                        si_value(r.answer.package.at[0].pressure_gauge.value), 1e-10));
 }
