@@ -40,6 +40,19 @@ constexpr auto kAliases = std::to_array<Alias>({
     {"lbs", "lb"},
     {"Bar", "bar"},
     {"PSI", "psi"},
+    {"sec", "s"},
+    {"minutes", "min"},
+    {"hr", "h"},
+    {"hours", "h"},
+    {"day", "d"},
+    {"days", "d"},
+    {"week", "wk"},
+    {"weeks", "wk"},
+    {"hl/h", "hL/h"},
+    {"l/min", "L/min"},
+    {"cm²", "cm2"},
+    {"m²", "m2"},
+    {"m³/h", "m3/h"},
 });
 
 constexpr bool is_space(char c) { return c == ' ' || c == '\t'; }

@@ -128,3 +128,17 @@ TEST_CASE("limits are rounded so that they never widen") {
   CHECK(rounded_up(1234.5, 230) == "1240");
   CHECK(rounded_down(-1.2345, 0.11) == "-1.24");
 }
+
+TEST_CASE("what people write for times, areas and flows is led to the unit") {
+  const auto meant = [](const std::string& text, Dimension d) {
+    const std::array only{d};
+    const auto parsed = parse_quantity(text, {.dimensions = only, .example = ""});
+    const auto* fault = std::get_if<GrammarFault>(&parsed);
+    return fault == nullptr ? std::string() : fault->message;
+  };
+  CHECK(meant("2 hours", Dimension::duration).find("'h'") != std::string::npos);
+  CHECK(meant("3 weeks", Dimension::duration).find("'wk'") != std::string::npos);
+  CHECK(meant("20 cm²", Dimension::area).find("'cm2'") != std::string::npos);
+  CHECK(meant("120 hl/h", Dimension::volume_flow).find("'hL/h'") != std::string::npos);
+  CHECK(meant("12 wk", Dimension::duration).empty());
+}
