@@ -7,72 +7,10 @@
 #include <limits>
 #include <map>
 
-#include "capsigh/answer/solve.hpp"
 #include "capsigh/quantity/grammar.hpp"
 
 namespace capsigh {
 namespace {
-
-// Every slot of an answer; one that was not asked is NaN, so that slots asked on one side of a
-// doubt only are seen.
-std::vector<double> flatten(const Answer& answer) {
-  std::vector<double> values;
-  each_figure(answer, [&](const FigurePath&, const auto& figure, const JsonUnit&) {
-    values.push_back(figure.asked ? si_value(figure.value)
-                                  : std::numeric_limits<double>::quiet_NaN());
-  });
-  return values;
-}
-
-// Solves with one doubt moved to z.
-std::optional<std::vector<double>> moved(Case& c, const Doubt& doubt, double z) {
-  *doubt.z = z;
-  const auto result = solve(c);
-  *doubt.z = 0;
-  if (refused(result) != nullptr) return std::nullopt;
-  return flatten(std::get<Answer>(result));
-}
-
-// What one doubt does to every figure: what one standard uncertainty moves it by, and the variance
-// that its curvature adds (second order; infinite where only one side has an answer).
-struct Sensitivity {
-  std::vector<double> change;
-  std::vector<double> curved;
-};
-
-// Of ½ f''(z² − 1): ¼ f''² Var z², where Var z² is 2 for a normal z and 4/5 for a rectangular one.
-double variance_of_curvature(double second_difference, Shape shape) {
-  const double variance_of_square = shape == Shape::rectangular ? 0.8 : 2.0;
-  return 0.25 * second_difference * second_difference * variance_of_square;
-}
-
-// Half the way from z = −1 to +1; one-sided where only one side has an answer. nullopt: no side
-// has one.
-std::optional<Sensitivity> sensitivity(Case& c, const Doubt& doubt,
-                                       const std::vector<double>& at_best) {
-  const auto up = moved(c, doubt, 1.0);
-  const auto down = moved(c, doubt, -1.0);
-  if (!up && !down) return std::nullopt;
-  // A root is found to about 1e-15; smaller differences than this are its noise, not a doubt.
-  constexpr double noise = 1e-12;
-  const auto side = [&](const std::optional<std::vector<double>>& values, std::size_t i) {
-    return values && std::isfinite((*values)[i]);
-  };
-  Sensitivity s{std::vector<double>(at_best.size(), 0.0), std::vector<double>(at_best.size(), 0.0)};
-  for (std::size_t i = 0; i < at_best.size(); ++i) {
-    const double high = side(up, i) ? (*up)[i] : at_best[i];
-    const double low = side(down, i) ? (*down)[i] : at_best[i];
-    const double sides = (side(up, i) ? 1 : 0) + (side(down, i) ? 1 : 0);
-    if (sides > 0) s.change[i] = (high - low) / sides;
-    if (!(std::abs(s.change[i]) > noise * std::abs(at_best[i]))) s.change[i] = 0;
-    const double second = high + low - 2 * at_best[i];
-    if (sides == 1) s.curved[i] = std::numeric_limits<double>::infinity();
-    if (sides == 2 && std::abs(second) > noise * std::abs(at_best[i])) {
-      s.curved[i] = variance_of_curvature(second, doubt.shape);
-    }
-  }
-  return s;
-}
 
 constexpr std::string_view kFarSearch = "container.safe_temperature";
 
@@ -84,25 +22,6 @@ Finding far_search(std::string_view figure) {
       "{} lies where formulas leave their range: it is a hint, with more doubt than is shown",
       figure);
   return f;
-}
-
-Finding too_wide(const Doubt& doubt) {
-  Finding f;
-  f.code = "doubt-too-wide";
-  f.message =
-      fmt::format("one standard uncertainty of {} to either side leads to no answer", doubt.name);
-  f.expected = "a ± within which an answer exists";
-  return f;
-}
-
-bool main_figure(const std::string& path) {
-  if (path.find(".course.") != std::string::npos) return false;
-  return path.ends_with(".safe_temperature") || path.ends_with(".largest_fill") ||
-         path.ends_with(".until_limit") || path.ends_with(".oxygen.total") ||
-         path.ends_with(".allowed_air") || path.ends_with(".volumes") ||
-         path.ends_with(".mass_concentration") || path.ends_with(".pressure_gauge") ||
-         path == "condition.temperature" || path.starts_with("saturation.") ||
-         path.starts_with("blend.") || path.ends_with("_loss");
 }
 
 std::string quantity_text(double si, std::string_view unit, Dimension dimension) {
@@ -149,50 +68,6 @@ void widen(Medium& medium, const Record* record, double factor) {
 }
 
 }  // namespace
-
-Propagation propagate(Case& c, Answer& answer) {
-  const auto doubts = each_doubt(c);
-  const auto at_best = flatten(answer);
-  std::vector<std::vector<double>> changes;
-  changes.reserve(doubts.size());
-  std::vector<double> curved(at_best.size(), 0.0);
-  Propagation result;
-  for (const auto& doubt : doubts) {
-    auto moved_by = sensitivity(c, doubt, at_best);
-    if (!moved_by) {
-      result.findings.push_back(too_wide(doubt));
-      moved_by = {std::vector<double>(at_best.size(), 0.0),
-                  std::vector<double>(at_best.size(), 0.0)};
-    }
-    for (std::size_t i = 0; i < curved.size(); ++i) curved[i] += moved_by->curved[i];
-    changes.push_back(std::move(moved_by->change));
-  }
-  auto& budget = result.budget;
-  std::size_t slot = 0;
-  each_figure(answer, [&](const FigurePath& path, auto& figure, const JsonUnit& unit) {
-    double variance = 0;
-    for (const auto& change : changes) variance += change[slot] * change[slot];
-    figure.u = from_si<std::decay_t<decltype(figure.u)>>(std::sqrt(variance));
-    // Two per cent of the variance are one of u.
-    constexpr double bends = 0.02;
-    figure.nonlinear = figure.asked && curved[slot] > bends * variance;
-    const std::string of = path.text();
-    if (figure.asked && variance > 0 && main_figure(of)) {
-      const auto first = static_cast<std::ptrdiff_t>(budget.size());
-      for (std::size_t d = 0; d < doubts.size(); ++d) {
-        const double share = changes[d][slot] * changes[d][slot] / variance;
-        constexpr double negligible = 1e-6;
-        if (share < negligible) continue;
-        budget.push_back({of, doubts[d].name, doubts[d].u, doubts[d].unit, share,
-                          std::abs(changes[d][slot]) / unit.factor, doubts[d].is_record});
-      }
-      std::sort(budget.begin() + first, budget.end(),
-                [](const auto& a, const auto& b) { return a.share > b.share; });
-    }
-    ++slot;
-  });
-  return result;
-}
 
 Findings judge_ranges(Case& c, const Trace& trace, double widening_per_width) {
   struct Worst {

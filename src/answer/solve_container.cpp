@@ -33,6 +33,25 @@ Temperature Solver::closing_temperature() const {
   return given ? given->now() : contact_.at.t;
 }
 
+// Z of the dry headspace with that share of air, over Z of air at ambient.
+double Solver::z_over_air(const AtTemperature& at, Pressure p, Fraction air) const {
+  const auto z = [&](const Shares& shares, Pressure at_pressure) {
+    return Compressibility{m_.r}(mix(m_, at, shares).b_mix, at_pressure, at.t).value();
+  };
+  return z(headspace_at_closing(air), p) / z(c_.air, contact_.ambient);
+}
+
+// A volume of air at ambient, as a share of the dry gas in the headspace: p_amb V_air/Z_air of
+// (p − p_v) V_H/Z. Z of the headspace depends on the share, by little.
+Fraction Solver::share_of_air(const AtTemperature& at, Pressure p, Volume headspace) const {
+  const Fraction ideal =
+      contact_.ambient * c_.container->closing_air_volume->now() / ((p - at.vapour) * headspace);
+  Fraction air = ideal;
+  constexpr int rounds = 6;
+  for (int i = 0; i < rounds && air.value() <= 1; ++i) air = ideal * z_over_air(at, p, air);
+  return air;
+}
+
 // Closed with what the liquid reached; `fill` instead of the recipe's, where it is given.
 OrRefusal<Closing> Solver::closing_with(const AtTemperature& at, const Contents& reached,
                                         std::optional<Volume> fill) const {
@@ -59,9 +78,7 @@ OrRefusal<Closing> Solver::closing_with(const AtTemperature& at, const Contents&
   }
   Fraction air = given.closing_air.now();
   if (given.closing_air_volume) {
-    // Amounts at the same temperature: p_amb V_air of (p − p_v) V_H.
-    air = contact_.ambient * given.closing_air_volume->now() /
-          ((closing.pressure - at.vapour) * headspace);
+    air = share_of_air(at, closing.pressure, headspace);
     if (air.value() > 1) {
       return Refusal{RefusalCode::air_exceeds_headspace, air.value(), 1};
     }

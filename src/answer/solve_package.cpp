@@ -153,14 +153,15 @@ Volume Solver::allowed_air(Trace* trace, const ContentCase& limit) const {
   const double from_gas = contact_.shares[gas].value();
   const double from_air = c_.air[gas].value();
   double share = 0;
-  constexpr int rounds = 4;  // the share enters its own gas law by half a percent
+  constexpr int rounds = 6;  // the share enters its own gas law by half a percent
   for (int i = 0; i < rounds; ++i) {
     head.mixture = mix(m_, at_closing_, headspace_at_closing(Fraction(share)));
     const Amount dry =
         gas_in_headspace(i + 1 == rounds ? trace : nullptr, m_, head, closing_.pressure);
     share = std::clamp(((more / dry).value() - from_gas) / (from_air - from_gas), 0.0, 1.0);
   }
-  return share * ((closing_.pressure - at_closing_.vapour) / contact_.ambient).value() *
+  const double z = z_over_air(at_closing_, closing_.pressure, Fraction(share));
+  return share / z * ((closing_.pressure - at_closing_.vapour) / contact_.ambient).value() *
          head.headspace;
 }
 

@@ -65,6 +65,8 @@ class Solver {
   void trace_temperature(const SaturationFigures& s, std::size_t gas);
   Pressure closing_pressure() const;
   Shares headspace_at_closing(Fraction air) const;
+  double z_over_air(const AtTemperature& at, Pressure p, Fraction air) const;
+  Fraction share_of_air(const AtTemperature& at, Pressure p, Volume headspace) const;
   Contents at_closing(Contents reached) const;
   Temperature closing_temperature() const;
   OrRefusal<Closing> closing_with(const AtTemperature& at, const Contents& reached,
