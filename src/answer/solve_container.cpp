@@ -98,7 +98,7 @@ OrRefusal<Closing> Solver::closing_with(const AtTemperature& at, const Contents&
 Compliance Solver::stretch() const {
   const auto& container = *c_.container;
   if (container.stretch) return container.stretch->now();
-  return container.typical_stretch ? container.typical_stretch->at(nullptr) : Compliance{};
+  return container.typical_stretch ? by_factor(*container.typical_stretch, nullptr) : Compliance{};
 }
 
 bool Solver::rated() const { return c_.container->rated_gauge || c_.container->rated_absolute; }

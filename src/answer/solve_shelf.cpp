@@ -14,12 +14,11 @@ WallLeaks Solver::leaks_at(const AtTemperature& at, Trace* trace) const {
     Pressure difference = wall.difference;
     if (wall.as_filled) difference = filled_partial(wall.gas) - outside;
     if (!(difference.value() > 0)) continue;
-    const auto reference = wall.stated ? wall.stated->now() : wall.typical.at(trace);
+    const auto reference = wall.stated ? wall.stated->now() : by_factor(wall.typical, trace);
     const auto q = apply(trace, TransmissionAt{m_.r}, reference, shelf.activation.at(trace), at.t,
                          shelf.reference);
     const auto rate =
         apply(trace, RateThroughWall{}, q, difference, volume_basis(m_, wall.gas, false, trace));
-    // A doubt as wide as the value may leave nothing.
     if (rate.value() > 0) leaks.push_back({wall.gas, rate, outside});
   }
   return leaks;

@@ -2,6 +2,7 @@
 // the opening, the closed package, and their traces.
 #pragma once
 
+#include <cmath>
 #include <optional>
 #include <string>
 
@@ -22,6 +23,14 @@ struct ContactState {
   Pressure pressure{};
   Contents contents;
 };
+
+// A typical value as wide in doubt as itself, and never below zero: it is moved by a factor,
+// q e^(d/q) for a shift of d, which to first order is the same.
+template <class Q>
+Q by_factor(const CitedConstant<Q>& typical, Trace* trace) {
+  const Q best = typical.law.value;
+  return best * std::exp(((typical.at(trace) - best) / best).value());
+}
 
 class Solver {
  public:
