@@ -6,6 +6,7 @@
 #include <cmath>
 
 #include "bind_input.hpp"
+#include "bind_life.hpp"
 #include "bind_package.hpp"
 #include "recipe_check.hpp"
 #include "records.hpp"
@@ -16,6 +17,7 @@ namespace {
 using answer_detail::constant;
 using answer_detail::NamedParts;
 using answer_detail::note;
+using answer_detail::uncertain;
 
 constexpr std::string_view kSelection = "selection.henry.";
 constexpr std::string_view kMixture = "mixture.";
@@ -33,7 +35,9 @@ class Binder : answer_detail::RecipeCheck {
     bind_contact();
     bind_targets();
     bind_container();
-    bind_opening();
+    life().bind_opening();
+    life().bind_conditioning();
+    life().bind_supply();
     mark_presence();
     if (has_error(findings_)) return {{}, findings_};
     return {std::move(binding_), {}};
@@ -211,6 +215,11 @@ class Binder : answer_detail::RecipeCheck {
     if (given.dissolved_place) {
       contact.content = bind_content(given.dissolved.front(),
                                      "contact.dissolved." + given.dissolved.front().gas.text);
+    } else if (recipe_.conditioning) {
+      contact.content = ContentCase{};
+      contact.content->gas = index("CO2");
+      contact.content->conditioned = true;
+      problem().content_from_target = recipe_.conditioning->find.has_value();
     } else if (!(given.temperature && given.pressure)) {
       contact.content = bind_content(leading_target(), "");
       problem().content_from_target = true;
@@ -343,19 +352,12 @@ class Binder : answer_detail::RecipeCheck {
     }
   }
 
-  void bind_opening() {
-    if (!recipe_.opening) return;
-    OpeningCase opening;
-    if (recipe_.opening->temperature) {
-      opening.temperature = take("opening.temperature", *recipe_.opening->temperature);
-    } else {
-      assume("opening-temperature-assumed", "opened at the temperature of the liquid above");
-    }
-    if (!recipe_.container) {
-      assume("opening-per-litre",
-             "no container: losses per litre of degassed liquid, no headspace");
-    }
-    problem().opening = opening;
+  // What opening, conditioning and supply add is bound in a file of its own.
+  answer_detail::LifeBinder life() {
+    return {recipe_, library_, binding_, [this](std::string_view gas) { return index(gas); },
+            [this](const GivenContent& given, const std::string& key) {
+              return bind_content(given, key);
+            }};
   }
 
   // Oxygen that is measured at closing, limited, or comes in through the wall.

@@ -62,6 +62,36 @@ void package_doubts(DoubtList& list, Case& c) {
   list.record(container.shelf->activation.doubt);
 }
 
+void opening_inputs(DoubtList& list, OpeningCase& opening) {
+  list.input("opening.temperature", opening.temperature);
+  if (opening.escape) {
+    list.input("opening.escape_half_life", opening.escape->half_life);
+    list.input("opening.surface", opening.escape->surface);
+  }
+  for (auto& moment : opening.after) list.input("opening.after", moment);
+  list.input("opening.reclose_after", opening.reclose_after);
+}
+
+void conditioning_inputs(DoubtList& list, ConditioningCase& conditioning) {
+  list.input("conditioning.dose", conditioning.dose);
+  list.input("conditioning.residual", conditioning.residual_temperature);
+  if (conditioning.residual) {
+    list.input("conditioning.residual.CO2", conditioning.residual->amount,
+               unit_of(conditioning.residual->measure));
+  }
+  list.input("conditioning.yield", conditioning.yield);
+}
+
+void supply_inputs(DoubtList& list, const Case& c, SupplyCase& supply) {
+  list.input("supply.liquid", supply.flow);
+  list.input("supply.amount", supply.amount);
+  for (auto& in : supply.incoming) {
+    list.input("supply.incoming." + std::string(c.medium.gases[in.gas].name), in.amount,
+               unit_of(in.measure));
+  }
+  list.input("supply.purge", supply.purge);
+}
+
 }  // namespace
 
 Shares contact_shares(const Case& c, Fraction found) {
@@ -121,12 +151,14 @@ std::vector<Doubt> each_doubt(Case& c) {
     list.input("container.nitrogen_dose", container.nitrogen_dose);
     package_doubts(list, c);
   }
-  if (c.opening) list.input("opening.temperature", c.opening->temperature);
+  if (c.opening) opening_inputs(list, *c.opening);
+  if (c.conditioning) conditioning_inputs(list, *c.conditioning);
+  if (c.supply) supply_inputs(list, c, *c.supply);
   for (auto& solute : c.medium.liquid.solutes) {
     list.input("liquid." + std::string(solute.name), solute.amount);
   }
   list.input("liquid.density", c.medium.liquid.measured_density);
-  each_record_doubt(c.medium, [&](RecordDoubt& doubt) { list.record(doubt); });
+  each_record_doubt(c, [&](RecordDoubt& doubt) { list.record(doubt); });
   return list.take();
 }
 

@@ -61,8 +61,8 @@ std::string range_in_words(const Record& record) {
   return text;
 }
 
-void widen(Medium& medium, const Record* record, double factor) {
-  each_record_doubt(medium, [&](RecordDoubt& doubt) {
+void widen(Case& c, const Record* record, double factor) {
+  each_record_doubt(c, [&](RecordDoubt& doubt) {
     if (doubt.record == record) doubt.widening = factor;
   });
 }
@@ -96,7 +96,7 @@ Findings judge_ranges(Case& c, const Trace& trace, double widening_per_width) {
   for (const auto& [record, entry] : worst) {
     const bool definition = record->uncertainty.kind == UncertaintyKind::exact;
     const double factor = 1.0 + widening_per_width * entry.widths;
-    if (!definition) widen(c.medium, record, factor);
+    if (!definition) widen(c, record, factor);
     const auto& box = nearest_box(record->range, entry.conditions);
     Finding f;
     f.severity = Severity::caution;

@@ -101,6 +101,13 @@ Finding explain(const Refusal& r) {
       return refusal_finding("nothing-of-that-gas",
                              "a content is asked of a gas that the headspace does not hold",
                              "a share of that gas under [gas]");
+    case RefusalCode::nothing_to_condition:
+      return refusal_finding(
+          "nothing-to-condition",
+          fmt::format("no sugar is needed: before it ferments the liquid holds {} g/L already, and "
+                      "{} g/L are wanted",
+                      significant(r.value, 3), significant(r.bound, 3)),
+          "a higher target, or a warmer residual");
     case RefusalCode::no_number: break;
   }
   return refusal_finding("no-number", "these inputs lead to no finite figure",

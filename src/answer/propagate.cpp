@@ -173,7 +173,11 @@ Finding too_wide(const Doubt& doubt) {
 }
 
 bool main_figure(const std::string& path) {
+  // A course repeats the budget of its beginning, and its own rate's, at every moment.
+  if (path.starts_with("opening.course.") && path.ends_with(".lost")) return true;
   if (path.find(".course.") != std::string::npos) return false;
+  if (path.starts_with("opening.reclosed.dissolved")) return false;
+  if (path.starts_with("conditioning.") || path.starts_with("supply.")) return true;
   return path.ends_with(".safe_temperature") || path.ends_with(".largest_fill") ||
          path.ends_with(".until_limit") || path.ends_with(".oxygen.total") ||
          path.ends_with(".allowed_air") || path.ends_with(".volumes") ||

@@ -66,6 +66,15 @@ class RecipeCheck {
   void check_altitude();
   void check_container(const ContainerSection& container);
   void check_judging(const JudgingSection& judging);
+  // Opening, conditioning and supply (check_life.cpp).
+  void check_life();
+  void check_opening(const OpeningSection& opening);
+  void check_escape(const OpeningSection& opening);
+  void check_conditioning(const ConditioningSection& conditioning);
+  void check_sugar(const LocatedText& sugar);
+  void check_residual(const ConditioningSection& conditioning);
+  void check_conditioning_contact(const ConditioningSection& conditioning);
+  void check_supply(const SupplySection& supply);
 };
 
 }  // namespace capsigh::answer_detail

@@ -6,6 +6,7 @@
 
 #include "capsigh/answer/solve.hpp"
 #include "capsigh/quantity/grammar.hpp"
+#include "caution_life.hpp"
 #include "judging.hpp"
 #include "report_package.hpp"
 
@@ -62,6 +63,11 @@ Place place_of(const Recipe& recipe, const Refusal& refusal) {
     const auto& temperature = recipe.opening->temperature;
     return temperature ? temperature->source.place : recipe.opening->place;
   }
+  if (refusal.asked_by == AskedBy::conditioning && recipe.conditioning) {
+    const bool found = refusal.code == RefusalCode::nothing_to_condition;
+    return found ? recipe.conditioning->find->place : recipe.conditioning->place;
+  }
+  if (refusal.asked_by == AskedBy::supply && recipe.supply) return recipe.supply->place;
   if (!contact) return {recipe.file, 0, 0, 1, ""};
   if (refusal.code == RefusalCode::temperature_beyond_model && contact->temperature) {
     return contact->temperature->source.place;
@@ -149,7 +155,14 @@ std::vector<std::string> main_figures(const Report& report) {
   const auto& a = report.answer;
   for (const auto& b : a.blend) paths.push_back(FigurePath("blend", b.gas).text());
   if (report.solved_for_temperature) paths.emplace_back("condition.temperature");
-  if (report.solved_for_pressure) paths.emplace_back("condition.pressure_gauge");
+  const auto& conditioned = a.conditioning;
+  if (conditioned.dose.asked) {
+    if (conditioned.dose_found) paths.emplace_back("conditioning.dose");
+    paths.emplace_back("conditioning.pressure_gauge");
+  } else if (report.solved_for_pressure) {
+    paths.emplace_back("condition.pressure_gauge");
+  }
+  if (a.supply.per_hectolitre.asked) paths.emplace_back("supply.per_hectolitre");
   if (!report.solved_for_temperature && !report.solved_for_pressure) {
     for (const auto& g : a.gases) {
       const bool trace = is_trace(g);
@@ -256,6 +269,7 @@ Outcome<Report> report(const Outcome<Recipe>& recipe, std::string_view recipe_te
   caution_concentration(problem, library, report);
   caution_freezing(problem, library, report);
   answer_detail::caution_package(problem, library, report);
+  answer_detail::caution_life(*binding, library, report);
   report.second_opinion = second_opinions(*binding, report.answer, library);
   auto propagation = propagate(problem, report.answer);
   if (has_error(propagation.findings)) {

@@ -45,6 +45,7 @@ void judge_rating(Report& report) {
     if (c.temperature.value == a.opening_temperature.value) opened_elsewhere = false;
   }
   if (opened_elsewhere) judge(a.opening_margin, a.opening_temperature);
+  judge(a.conditioning.margin, a.conditioning.temperature);
   if (!above.empty()) danger(report, "over-rating", above);
 }
 

@@ -37,8 +37,10 @@ std::vector<Asked> decided(const Answer& answer, bool content_known,
     if (!figure.asked) return;
     const std::string text = path.text();
     const bool content = !found && !content_known && text == content_of;
-    const bool holds =
-        !found && (text == "saturation.CO2.pressure_gauge" || text == "saturation.CO2.temperature");
+    const bool conditioned = answer.conditioning.dose.asked;
+    const bool holds = conditioned ? text == "conditioning.pressure_gauge"
+                                   : !found && (text == "saturation.CO2.pressure_gauge" ||
+                                                text == "saturation.CO2.temperature");
     if (content || holds || text == "blend.CO2") {
       all.push_back({text, (si_value(figure.value) - unit.offset) / unit.factor, unit});
     }
@@ -63,8 +65,9 @@ std::vector<SecondOpinion> second_opinions(const Binding& binding, const Answer&
   std::vector<SecondOpinion> opinions;
   for (const Record* relation : others) {
     Case other = binding.problem;
-    if (!other.target_at_package) other.container.reset();
+    if (!other.target_at_package && !other.conditioning) other.container.reset();
     other.opening.reset();
+    other.supply.reset();
     other.medium.convention = answer_detail::convention_of(library, relation, other.medium);
     const auto solved = solve(other);
     if (refused(solved) != nullptr) continue;

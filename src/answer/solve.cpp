@@ -4,19 +4,22 @@
 #include <limits>
 
 #include "capsigh/balance/bracketing.hpp"
-#include "capsigh/quantity/grammar.hpp"
 #include "solver.hpp"
 
 namespace capsigh {
 namespace answer_detail {
 
 OrRefusal<Answer> Solver::run() {
-  auto refusal = by(AskedBy::contact, solve_contact());
+  Maybe refusal;
+  if (c_.conditioning) refusal = by(AskedBy::conditioning, prepare_conditioning());
+  if (!refusal) refusal = by(AskedBy::contact, solve_contact());
   if (!refusal) refusal = by(AskedBy::saturation, answer_saturation());
   if (!refusal && c_.container) refusal = by(AskedBy::closing, answer_container());
   if (!refusal && c_.classed_by_gauge && m_.co2 < m_.size()) {
     refusal = by(AskedBy::closing, answer_wine());
   }
+  if (!refusal && c_.conditioning) refusal = by(AskedBy::conditioning, answer_conditioning());
+  if (!refusal && c_.supply) refusal = by(AskedBy::supply, answer_supply());
   if (!refusal && c_.opening) refusal = by(AskedBy::opening, answer_opening());
   if (!refusal) refusal = all_finite();
   if (refusal) return *refusal;
@@ -55,6 +58,7 @@ MassDensity Solver::density_of_content(Trace* trace) const {
 }
 
 Molality Solver::molality(const ContentCase& content) const {
+  if (content.conditioned) return residual_ + produced_;
   const double number = content.amount.now().value();
   const auto molar_mass = m_.gases[content.gas].molar_mass.at(nullptr);
   const auto rho = density_of_content(nullptr);
@@ -145,8 +149,9 @@ OrRefusal<ClosedState> Solver::settled_package(const AtTemperature& closing_at,
 }
 
 OrRefusal<Pressure> Solver::pressure_for_target(std::size_t gas, Molality wanted) const {
-  return c_.target_at_package && c_.container ? headspace_for_package(gas, wanted)
-                                              : headspace_for(gas, wanted);
+  return c_.target_at_package && c_.container && !c_.conditioning
+             ? headspace_for_package(gas, wanted)
+             : headspace_for(gas, wanted);
 }
 
 // The share of the line to be found, at the given temperature and pressure.
@@ -321,7 +326,7 @@ std::optional<Refusal> Solver::answer_opening() {
       if (const auto* no = refused(found)) return *no;
       state = std::get<ClosedState>(found);
     }
-    if (trace_ != nullptr) opened_state_ = state;
+    opened_state_ = state;
     answer_.opening_pressure = gauge(state.pressure, contact_.ambient);
     answer_.opening_margin = margin(state);
     if (!rated()) answer_.opening_margin.asked = false;
@@ -335,12 +340,7 @@ std::optional<Refusal> Solver::answer_opening() {
   for (std::size_t i = 0; i < m_.size(); ++i) {
     if (c_.in_container[i] != 0 || c_.in_contact[i] != 0) answer_losses(opened, i);
   }
-  return std::nullopt;
-}
-
-// One litre of degassed liquid at 20 °C.
-Mass Solver::litre() const {
-  return from_si<Volume>(find_unit("L", Dimension::volume)->factor) * density_of_content(nullptr);
+  return answer_opened(opened);
 }
 
 void Solver::answer_losses(const Opened& opened, std::size_t gas) {

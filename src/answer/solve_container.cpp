@@ -105,10 +105,10 @@ bool Solver::rated() const { return c_.container->rated_gauge || c_.container->r
 
 std::optional<Refusal> Solver::answer_container() {
   at_closing_ = at_temperature(m_, liquid_, closing_temperature());
-  const auto closing = closing_with(at_closing_, contact_.contents);
+  const auto closing = closing_with(at_closing_, filled_with());
   if (const auto* no = refused(closing)) return *no;
   closing_ = std::get<Closing>(closing);
-  filling_ = close(m_, at_closing_, closing_);
+  filling_ = fermented(close(m_, at_closing_, closing_));
   for (const auto& t : c_.container->storage) {
     if (auto no = answer_storage(t.now())) return no;
   }

@@ -74,10 +74,10 @@ Temperature Solver::hottest() const {
 
 // Above zero where a fill, m³, keeps the ullage and the rating; NaN where nothing can be filled.
 double Solver::room_for_fill(const AtTemperature& hottest, double fill) const {
-  const auto closing = closing_with(at_closing_, contact_.contents, from_si<Volume>(fill));
+  const auto closing = closing_with(at_closing_, filled_with(), from_si<Volume>(fill));
   if (refused(closing) != nullptr) return kNone;
   const auto& closed = std::get<Closing>(closing);
-  const auto found = equilibrium(m_, close(m_, at_closing_, closed), hottest);
+  const auto found = equilibrium(m_, fermented(close(m_, at_closing_, closed)), hottest);
   if (refused(found) != nullptr) return kNone;
   const auto& state = std::get<ClosedState>(found);
   const Fraction ullage = state.headspace / closed.shell.brimful;

@@ -95,9 +95,9 @@ void Solver::trace_inverses() {
   }
   if (package.largest_fill.asked) {
     trace_->begin("container.largest_fill");
-    const auto closing = closing_with(at_closing_, contact_.contents, package.largest_fill.value);
+    const auto closing = closing_with(at_closing_, filled_with(), package.largest_fill.value);
     if (refused(closing) == nullptr) {
-      const auto filling = close(m_, at_closing_, std::get<Closing>(closing));
+      const auto filling = fermented(close(m_, at_closing_, std::get<Closing>(closing)));
       const auto state = equilibrium(m_, liquid_, filling, hottest());
       if (refused(state) == nullptr) trace_state(std::get<ClosedState>(state));
     }

@@ -9,8 +9,9 @@
 #include "capsigh/answer/solve.hpp"
 #include "capsigh/balance/closed_container.hpp"
 #include "capsigh/balance/contact.hpp"
-#include "capsigh/balance/opening.hpp"
+#include "capsigh/balance/opened.hpp"
 #include "capsigh/balance/shelf.hpp"
+#include "capsigh/balance/supply.hpp"
 
 namespace capsigh::answer_detail {
 
@@ -119,6 +120,48 @@ class Solver {
   void answer_losses(const Opened& opened, std::size_t gas);
   void trace_losses(const Opened& opened, std::size_t gas, bool bubbles);
 
+  // Conditioning: what was dissolved before, what the sugar adds (solve_conditioning.cpp).
+  Shares pure_carbon_dioxide() const;
+  OrRefusal<Molality> residual(Trace* trace) const;
+  Fraction sugar_yield(Trace* trace) const;
+  Fraction per_sugar(Trace* trace) const;
+  Maybe prepare_conditioning();
+  Maybe find_produced();
+  OrRefusal<ClosedState> conditioned_package(Molality produced) const;
+  MassConcentration per_litre(Molality b, std::size_t gas) const;
+  Contents filled_with() const;
+  Filling fermented(Filling filling) const;
+  Maybe answer_conditioning();
+  void trace_conditioning(const std::optional<ClosedState>& package);
+
+  // The opened drink in time (solve_opened.cpp).
+  bool present(std::size_t gas) const {
+    return c_.in_container[gas] != 0 || c_.in_contact[gas] != 0;
+  }
+  Maybe answer_opened(const Opened& opened);
+  void answer_shares(const Opened& opened);
+  LossShare share_of(const Opened& opened, Mass loss) const;
+  void answer_cold(const Opened& opened);
+  void answer_bubbles(const Opened& opened, Molality saturated);
+  Rate escape_rate(Trace* trace, const Opened& opened) const;
+  Fraction after_pour(Trace* trace) const;
+  Molality saturated(Trace* trace, const Opened& opened) const;
+  void answer_escape(const Opened& opened, const Contents& flat, Molality saturated);
+  void answer_moment(const Opened& opened, const Contents& flat, Duration after);
+  Maybe answer_reclosed(const Opened& opened, const Contents& flat);
+  void trace_reclosed(const ClosedState& state);
+
+  // Gas and heat for a run (solve_supply.cpp).
+  Molality incoming(std::size_t gas) const;
+  Mass dissolved_in(std::size_t gas, Mass liquid, Trace* trace);
+  Shares supplied_at_closing() const;
+  Mass headspace_supply(Mass liquid) const;
+  Mass purge_supply(Mass liquid, Trace* trace) const;
+  TemperatureDifference warming(Temperature t, const Contents& reached, Trace* trace) const;
+  void answer_uncooled();
+  Maybe answer_supply();
+  void trace_supply();
+
   const Case& c_;
   const Medium& m_;
   Trace* trace_;
@@ -128,6 +171,8 @@ class Solver {
   AtTemperature at_closing_;
   Closing closing_;
   Filling filling_;
+  Molality residual_{};  // of CO2, before conditioning
+  Molality produced_{};
   boost::container::static_vector<std::optional<ClosedState>, kMaxStorage> settled_;
   std::optional<ClosedState> closed_;        // the first of them
   std::optional<Refusal> unsettled_;         // why there is none

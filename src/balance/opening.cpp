@@ -23,11 +23,19 @@ Opened open_package(const Medium& m, const Filling& filling, const ClosedState& 
   opened.liquid = filling.liquid;
   opened.contents = state.contents;
   opened.at = state.at;
+  // A wall that was stretched draws back as the pressure falls.
+  ClosedState relaxed = state;
+  relaxed.headspace =
+      std::max(state.headspace - (stretched(nullptr, filling.shell, state.pressure) -
+                                  stretched(nullptr, filling.shell, ambient)),
+               Volume{});
+  opened.headspace = relaxed.headspace;
   const Amount before = gas_in_headspace(nullptr, m, state, state.pressure);
-  const Amount after = gas_in_headspace(nullptr, m, state, ambient);
+  const Amount after = gas_in_headspace(nullptr, m, relaxed, ambient);
   opened.in_headspace = portion(state.mixture.shares, before);
   opened.stays = portion(state.mixture.shares, std::min(before, after));
-  opened.as_air = portion(air, after);
+  relaxed.mixture = mix(m, state.at, air);
+  opened.as_air = portion(air, gas_in_headspace(nullptr, m, relaxed, ambient));
   return opened;
 }
 

@@ -43,6 +43,8 @@ constexpr auto kConstantUnits = std::to_array<ConstantUnit>({
     {"L/mol", 1e-3},
     {"mL/g", 1e-3},
     {"kJ/mol", 1e3},
+    {"kJ/(kg K)", 1e3},
+    {"mN/m", 1e-3},
     {"ppm", 1e-6},
     {"g/g", 1},
     {"%/bar", 1e-2 / 1e5},

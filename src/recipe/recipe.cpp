@@ -2,6 +2,7 @@
 
 #include <fmt/format.h>
 
+#include "life_sections.hpp"
 #include "section.hpp"
 
 namespace capsigh {
@@ -35,7 +36,15 @@ class Reader {
     read_contact(top);
     read_target(top);
     read_container(top);
-    read_opening(top);
+    if (const Node* node = table(top, "opening")) {
+      recipe_.opening = recipe_detail::read_opening(*node, recipe_, findings_);
+    }
+    if (const Node* node = table(top, "conditioning")) {
+      recipe_.conditioning = recipe_detail::read_conditioning(*node, recipe_, findings_);
+    }
+    if (const Node* node = table(top, "supply")) {
+      recipe_.supply = recipe_detail::read_supply(*node, recipe_, findings_);
+    }
     read_judging(top);
     top.finish();
     recipe_.readable = !has_error(findings_);
@@ -171,17 +180,6 @@ class Reader {
     }
     s.finish();
     recipe_.container = std::move(container);
-  }
-
-  void read_opening(Section& top) {
-    const Node* node = table(top, "opening");
-    if (node == nullptr) return;
-    Section s = section(*node, "opening");
-    OpeningSection opening;
-    opening.place = node->place;
-    opening.temperature = s.temperature("temperature", "8 degC");
-    s.finish();
-    recipe_.opening = std::move(opening);
   }
 
   void read_judging(Section& top) {

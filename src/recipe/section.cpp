@@ -114,11 +114,17 @@ Given<Q> Section::given(const Member& member, Dimension dimension, std::string_v
   return g;
 }
 
-std::optional<Given<Temperature>> Section::temperature(const std::string& key,
-                                                       std::string_view example) {
+template <class Q>
+std::optional<Given<Q>> Section::taken(const std::string& key, Dimension dimension,
+                                       std::string_view example, Sign sign) {
   const Member* member = take(key);
   if (member == nullptr) return std::nullopt;
-  return given<Temperature>(*member, Dimension::temperature, example, false, Sign::positive);
+  return given<Q>(*member, dimension, example, false, sign);
+}
+
+std::optional<Given<Temperature>> Section::temperature(const std::string& key,
+                                                       std::string_view example) {
+  return taken<Temperature>(key, Dimension::temperature, example, Sign::positive);
 }
 
 std::optional<Given<Pressure>> Section::absolute_pressure(const std::string& key,
@@ -129,16 +135,12 @@ std::optional<Given<Pressure>> Section::absolute_pressure(const std::string& key
 }
 
 std::optional<Given<Volume>> Section::volume(const std::string& key, std::string_view example) {
-  const Member* member = take(key);
-  if (member == nullptr) return std::nullopt;
-  return given<Volume>(*member, Dimension::volume, example, false, Sign::positive);
+  return taken<Volume>(key, Dimension::volume, example, Sign::positive);
 }
 
 std::optional<Given<Length>> Section::length(const std::string& key, std::string_view example,
                                              Sign sign) {
-  const Member* member = take(key);
-  if (member == nullptr) return std::nullopt;
-  return given<Length>(*member, Dimension::length, example, false, sign);
+  return taken<Length>(key, Dimension::length, example, sign);
 }
 
 std::optional<Given<Fraction>> Section::share(const std::string& key, std::string_view example,
@@ -197,9 +199,7 @@ std::optional<LocatedText> Section::text(const std::string& key, std::string_vie
 
 std::optional<Given<MassDensity>> Section::density(const std::string& key,
                                                    std::string_view example) {
-  const Member* member = take(key);
-  if (member == nullptr) return std::nullopt;
-  return given<MassDensity>(*member, Dimension::density, example, false, Sign::positive);
+  return taken<MassDensity>(key, Dimension::density, example, Sign::positive);
 }
 
 GivenSolute Section::amount_of(const Member& member, std::span<const Dimension> dimensions,
@@ -250,9 +250,43 @@ std::vector<GivenSolute> Section::salts() {
 }
 
 std::optional<Given<Mass>> Section::mass(const std::string& key, std::string_view example) {
-  const Member* member = take(key);
-  if (member == nullptr) return std::nullopt;
-  return given<Mass>(*member, Dimension::mass, example, false, Sign::positive);
+  return taken<Mass>(key, Dimension::mass, example, Sign::positive);
+}
+
+std::optional<Given<Duration>> Section::duration(const std::string& key, std::string_view example,
+                                                 Sign sign) {
+  return taken<Duration>(key, Dimension::duration, example, sign);
+}
+
+std::vector<Given<Duration>> Section::durations(const Member& member, std::string_view example) {
+  std::vector<Given<Duration>> all;
+  if (member.value.kind != Node::Kind::array) {
+    all.push_back(given<Duration>(member, Dimension::duration, example, false, Sign::not_negative));
+    return all;
+  }
+  for (const auto& item : member.value.items) {
+    const Member one{member.key, member.key_place, item};
+    all.push_back(given<Duration>(one, Dimension::duration, example, false, Sign::not_negative));
+  }
+  return all;
+}
+
+std::optional<Given<Area>> Section::area(const std::string& key, std::string_view example) {
+  return taken<Area>(key, Dimension::area, example, Sign::positive);
+}
+
+std::optional<Given<VolumeFlow>> Section::volume_flow(const std::string& key,
+                                                      std::string_view example, Sign sign) {
+  return taken<VolumeFlow>(key, Dimension::volume_flow, example, sign);
+}
+
+std::optional<Given<MassConcentration>> Section::mass_concentration(const std::string& key,
+                                                                    std::string_view example) {
+  return taken<MassConcentration>(key, Dimension::mass_concentration, example, Sign::positive);
+}
+
+std::optional<Given<Fraction>> Section::multiple(const std::string& key, std::string_view example) {
+  return taken<Fraction>(key, Dimension::fraction, example, Sign::not_negative);
 }
 
 void Section::air(const std::string& key, std::optional<Given<Fraction>>& share_out,

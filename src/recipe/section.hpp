@@ -32,6 +32,17 @@ class Section {
                                        Sign sign = Sign::not_negative);
   std::optional<LocatedText> text(const std::string& key, std::string_view example);
   std::optional<Given<Mass>> mass(const std::string& key, std::string_view example);
+  std::optional<Given<Duration>> duration(const std::string& key, std::string_view example,
+                                          Sign sign);
+  /// A list of times, or one.
+  std::vector<Given<Duration>> durations(const Member& member, std::string_view example);
+  std::optional<Given<Area>> area(const std::string& key, std::string_view example);
+  std::optional<Given<VolumeFlow>> volume_flow(const std::string& key, std::string_view example,
+                                               Sign sign = Sign::positive);
+  std::optional<Given<MassConcentration>> mass_concentration(const std::string& key,
+                                                             std::string_view example);
+  /// A share that may be more than the whole.
+  std::optional<Given<Fraction>> multiple(const std::string& key, std::string_view example);
   /// A key that is a share of the headspace or a volume: whichever it is is filled.
   void air(const std::string& key, std::optional<Given<Fraction>>& share,
            std::optional<Given<Volume>>& volume);
@@ -61,6 +72,9 @@ class Section {
                                          std::span<const Dimension> dimensions,
                                          std::string_view example, bool absolute_by_nature,
                                          Sign sign);
+  template <class Q>
+  std::optional<Given<Q>> taken(const std::string& key, Dimension dimension,
+                                std::string_view example, Sign sign);
   template <class Q>
   Given<Q> given(const Member& member, Dimension dimension, std::string_view example,
                  bool absolute_by_nature, Sign sign);

@@ -4,6 +4,7 @@
 
 #include "capsigh/quantity/grammar.hpp"
 #include "capsigh/render/render.hpp"
+#include "text_life.hpp"
 #include "text_package.hpp"
 #include "text_page.hpp"
 
@@ -30,6 +31,8 @@ class TextReport {
     render_detail::package_states(page_, a_.package);
     render_detail::package_shelf(page_, a_.package);
     opening();
+    render_detail::conditioning_section(page_, r_);
+    render_detail::supply_section(page_, r_);
     page_.doubts(r_);
     page_.drawn(r_);
     if (options_.with_trace) trace();
@@ -68,9 +71,11 @@ class TextReport {
                  page_.in_units(b.share, Dimension::fraction, "%"));
     }
     if (r_.solved_for_temperature) page_.line("Temperature needed", page_.celsius(a_.temperature));
-    if (r_.solved_for_pressure)
+    render_detail::life_answers(page_, r_);
+    const bool conditioned = a_.conditioning.dose.asked;
+    if (r_.solved_for_pressure && !conditioned)
       page_.pressures("Pressure needed", a_.pressure_gauge, a_.pressure_absolute);
-    if (!r_.solved_for_temperature && !r_.solved_for_pressure) {
+    if (conditioned || (!r_.solved_for_temperature && !r_.solved_for_pressure)) {
       for (const auto& g : a_.gases) page_.gas(g);
     }
     if (!r_.solved_for_pressure && a_.blend.empty()) saturation();
@@ -96,7 +101,8 @@ class TextReport {
   }
 
   void condition() {
-    page_.section("Where liquid and gas meet");
+    page_.section(a_.conditioning.dose.asked ? "The conditioned liquid by itself, at saturation"
+                                             : "Where liquid and gas meet");
     page_.line("Temperature", page_.celsius(a_.temperature));
     page_.pressures("Pressure", a_.pressure_gauge, a_.pressure_absolute);
     page_.line("Ambient pressure", page_.in_units(a_.ambient, Dimension::pressure, "hPa", " abs"));
@@ -167,6 +173,7 @@ class TextReport {
       loss_line(name + " as fizz", loss.fizz_loss, in);
       loss_line(name + " going flat in air", loss.flat_loss, in);
     }
+    render_detail::opened_rows(page_, r_);
   }
 
   // A gas other than CO2 that has nothing to lose needs no line.

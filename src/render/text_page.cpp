@@ -42,8 +42,8 @@ std::string TextPage::celsius(const Figure<Temperature>& t) const {
 }
 
 // Gases that are there in traces are read in mg/L; volumes would be a row of zeros.
-void TextPage::gas(const GasFigures& g) {
-  const std::string label = fmt::format("Dissolved {}", g.gas);
+void TextPage::gas(const GasFigures& g, std::string_view indent) {
+  const std::string label = fmt::format("{}Dissolved {}", indent, g.gas);
   std::string chosen;
   const auto add = [&](const auto& figure, const Unit& in) {
     chosen += (chosen.empty() ? "" : " = ") + shown(figure, in);
@@ -79,6 +79,7 @@ std::pair<Dimension, std::string_view> TextPage::shown_as(const JsonUnit& json) 
       Shown{"mol/L", Dimension::amount_concentration, "mol/L"},
       Shown{"mg/kg", Dimension::mass_fraction, "mg/kg"},
       Shown{"mg/L", Dimension::mass_concentration, "mg/L"},
+      Shown{"kg", Dimension::mass, "kg"},
       Shown{"g", Dimension::mass, "g"},
       Shown{"ug", Dimension::mass, "ug"},
       Shown{"mL", Dimension::volume, "mL"},

@@ -45,7 +45,7 @@ class TextPage {
   void pressures(std::string_view label, const Figure<GaugePressure>& gauge,
                  const Figure<Pressure>& absolute);
   /// The content of one gas.
-  void gas(const GasFigures& g);
+  void gas(const GasFigures& g, std::string_view indent = "");
   /// A verdict with what would be accepted and what would make it a clear one.
   void judged(const JudgedTarget& j);
   /// Where the doubt of the main figures comes from; what a Monte Carlo has shown.

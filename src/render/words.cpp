@@ -26,9 +26,14 @@ const Unit* spoken_unit(std::string_view si_unit, std::string_view key, Asked as
       Spoken{"m", "m", Dimension::length},
       Spoken{"kg", "g", Dimension::mass},
       Spoken{"kg/m3", "g/L", Dimension::mass_concentration},
+      Spoken{"s", "min", Dimension::duration},
+      Spoken{"m2", "cm2", Dimension::area},
+      Spoken{"m3/s", "hL/h", Dimension::volume_flow},
   };
   const bool content = key.find("dissolved") != std::string_view::npos ||
-                       key.find("filling_loss") != std::string_view::npos;
+                       key.find("filling_loss") != std::string_view::npos ||
+                       key.find("residual.") != std::string_view::npos ||
+                       key.find("incoming.") != std::string_view::npos;
   if (si_unit == "1") {
     return content ? find_unit("vol", Dimension::gas_volumes) : find_unit("%", Dimension::fraction);
   }
@@ -105,6 +110,9 @@ std::string figure_label(std::string_view path) {
   if (path == "wine.pressure_gauge") return "Gauge at 20 °C";
   if (path.starts_with("blend.")) return between("blend.") + " in the gas";
   if (path.starts_with("container.at.")) return "Pressure in the package";
+  if (path == "conditioning.dose") return "Sugar needed";
+  if (path == "conditioning.pressure_gauge") return "Pressure once conditioned";
+  if (path == "supply.per_hectolitre") return "Gas per hectolitre";
   return std::string(path);
 }
 

@@ -4,6 +4,7 @@
 
 #include <optional>
 
+#include "capsigh/answer/life_case.hpp"
 #include "capsigh/answer/package_case.hpp"
 #include "capsigh/balance/medium.hpp"
 #include "capsigh/models/atmosphere.hpp"
@@ -43,10 +44,6 @@ struct ContactCase {
   std::optional<Uncertain<Fraction>> approach;  ///< of saturation actually reached
 };
 
-struct OpeningCase {
-  std::optional<Uncertain<Temperature>> temperature;
-};
-
 struct Case {
   Medium medium;
   AmbientCase ambient;
@@ -54,6 +51,8 @@ struct Case {
   PerGas<ContentCase> targets;
   std::optional<ContainerCase> container;
   std::optional<OpeningCase> opening;
+  std::optional<ConditioningCase> conditioning;
+  std::optional<SupplyCase> supply;
   PerGas<std::uint8_t> in_contact;    ///< whether a gas belongs to the headspace at the contact
   PerGas<std::uint8_t> in_container;  ///< whether it belongs to the closed package
   Shares air;                         ///< of the room and of air in a headspace
@@ -63,6 +62,15 @@ struct Case {
   bool classed_by_gauge = false;     ///< a wine: its gauge pressure at 20 °C is asked for
   bool content_from_target = false;  ///< the contact's content is a target's
 };
+
+/// Calls visit(RecordDoubt&) for every record's doubt of the case.
+template <class Visit>
+void each_record_doubt(Case& c, Visit&& visit) {
+  each_record_doubt(c.medium, visit);
+  if (c.opening) each_record_doubt(*c.opening, visit);
+  if (c.conditioning) each_record_doubt(*c.conditioning, visit);
+  if (c.supply) each_record_doubt(*c.supply, visit);
+}
 
 /// The dry composition at the contact at the current z, adding up to one. `found` is the share of
 /// the line that is solved for.

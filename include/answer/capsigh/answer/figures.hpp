@@ -4,6 +4,7 @@
 #include <optional>
 #include <string_view>
 
+#include "capsigh/answer/life_figures.hpp"
 #include "capsigh/answer/package_figures.hpp"
 #include "capsigh/balance/refusal.hpp"
 
@@ -47,6 +48,9 @@ struct Answer {
   Figure<Pressure> opening_margin;         ///< rating less that
   bool breaks_out_above = false;           ///< the depth holds more than the headspace does
   PerGas<LossFigures> opening;
+  OpenedFigures opened;
+  ConditioningFigures conditioning;
+  SupplyFigures supply;
 };
 
 /// Visits every slot of an answer in a fixed order: f(path, figure, unit).
@@ -79,6 +83,9 @@ void each_figure(A& a, F&& f) {
     f(at.then("fizz_loss"), loss.fizz_loss, gram);
     f(at.then("flat_loss"), loss.flat_loss, gram);
   }
+  detail::each_opened_figure(a.opened, f);
+  detail::each_conditioning_figure(a.conditioning, f);
+  detail::each_supply_figure(a.supply, f);
 }
 
 }  // namespace capsigh

@@ -4,6 +4,7 @@
 #include <boost/container/static_vector.hpp>
 #include <optional>
 
+#include "capsigh/answer/content_case.hpp"
 #include "capsigh/balance/medium.hpp"
 #include "capsigh/models/permeation.hpp"
 #include "capsigh/quantity/uncertain.hpp"
@@ -14,15 +15,6 @@ namespace capsigh {
 inline constexpr std::size_t kMaxStorage = 12;
 inline constexpr std::size_t kMaxCourse = 8;  ///< points of a course that are shown
 inline constexpr std::size_t kMaxMarch = 16;  ///< times a course is followed to
-
-/// The content of one gas in the measure it was given in; the number is in SI units of it.
-struct ContentCase {
-  std::size_t gas = 0;
-  ContentMeasure measure = ContentMeasure::volumes;
-  Uncertain<Fraction> amount;
-  bool is_limit = false;  ///< of a target: a maximum or minimum, which nothing is solved for
-  Interval accepted;      ///< of a target: what conforms, in SI units of the measure
-};
 
 /// How one gas passes the wall: so much under a reference difference of partial pressure.
 struct WallCase {

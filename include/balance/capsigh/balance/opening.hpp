@@ -53,6 +53,7 @@ struct Opened {
   Mass liquid{};
   Contents contents;
   AtTemperature at;
+  Volume headspace{};           ///< once the container has relaxed
   PerGas<Amount> in_headspace;  ///< before
   PerGas<Amount> stays;         ///< at ambient pressure, same composition
   PerGas<Amount> as_air;        ///< of each gas once air has replaced what stayed

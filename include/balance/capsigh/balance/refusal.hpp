@@ -17,11 +17,12 @@ enum class RefusalCode {
   no_blend_holds,            ///< not even the pure gas holds that content at that pressure
   air_exceeds_headspace,     ///< more air than the headspace has room for
   too_little_everywhere,  ///< up to the end of the search, more than that content stays dissolved
+  nothing_to_condition,   ///< the liquid holds the wanted content before any sugar ferments
   no_number,              ///< a figure came out as no finite number
 };
 
 /// Which step of an answer was refused, so that a message can point at what asked for it.
-enum class AskedBy { contact, saturation, closing, opening };
+enum class AskedBy { contact, saturation, closing, opening, conditioning, supply };
 
 /// value and bound in SI units (Pa, K, m³ or 1, by the code).
 struct Refusal {

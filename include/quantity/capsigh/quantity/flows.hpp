@@ -17,8 +17,7 @@ template <>
 inline constexpr std::string_view si_symbol<MassFlow> = "kg/s";
 template <>
 inline constexpr std::string_view si_symbol<AmountFlow> = "mol/s";
-template <>
-inline constexpr std::string_view si_symbol<VolumeFlow> = "m3/s";
+// The symbol of VolumeFlow stands in units.hpp: Transmission is the same type.
 template <>
 inline constexpr std::string_view si_symbol<Rate> = "1/s";
 template <>

@@ -10,6 +10,7 @@
 
 #include "capsigh/document/document.hpp"
 #include "capsigh/quantity/finding.hpp"
+#include "capsigh/quantity/flows.hpp"
 #include "capsigh/quantity/grammar.hpp"
 #include "capsigh/quantity/units.hpp"
 
@@ -138,6 +139,34 @@ struct ContainerSection {
 struct OpeningSection {
   Place place;
   std::optional<Given<Temperature>> temperature;
+  std::optional<Given<Duration>> escape_half_life;
+  std::optional<Given<Area>> surface;
+  std::optional<LocatedText> stillness;
+  std::vector<Given<Duration>> after;
+  std::optional<Place> after_place;
+  std::optional<Given<Duration>> reclose_after;
+};
+
+/// Carbonation by fermentation in the package.
+struct ConditioningSection {
+  Place place;
+  std::optional<LocatedText> sugar;
+  std::optional<Given<MassConcentration>> dose;
+  std::optional<LocatedText> find;  ///< dose = "find"
+  std::optional<Given<Temperature>> residual_temperature;
+  std::vector<GivenContent> residual;
+  std::optional<Place> residual_place;
+  std::optional<Given<Fraction>> yield;
+};
+
+/// Gas and heat for a run.
+struct SupplySection {
+  Place place;
+  std::optional<Given<VolumeFlow>> flow;
+  std::optional<Given<Volume>> amount;
+  std::vector<GivenContent> incoming;
+  std::optional<Place> incoming_place;
+  std::optional<Given<Fraction>> purge;  ///< gas at ambient blown through, per brimful volume
 };
 
 /// How targets and limits are judged.
@@ -161,6 +190,8 @@ struct Recipe {
   std::optional<ContainerSection> container;
   std::optional<OpeningSection> opening;
   std::optional<JudgingSection> judging;
+  std::optional<ConditioningSection> conditioning;
+  std::optional<SupplySection> supply;
   std::vector<std::pair<std::string, std::string>> inputs;  ///< as understood: key and text
 };
 
