@@ -15,9 +15,7 @@ OrRefusal<Answer> Solver::run() {
   if (!refusal) refusal = by(AskedBy::contact, solve_contact());
   if (!refusal) refusal = by(AskedBy::saturation, answer_saturation());
   if (!refusal && c_.container) refusal = by(AskedBy::closing, answer_container());
-  if (!refusal && c_.classed_by_gauge && m_.co2 < m_.size()) {
-    refusal = by(AskedBy::closing, answer_wine());
-  }
+  if (!refusal && c_.classed_by_gauge && m_.co2 < m_.size()) answer_wine();
   if (!refusal && c_.conditioning) refusal = by(AskedBy::conditioning, answer_conditioning());
   if (!refusal && c_.supply) refusal = by(AskedBy::supply, answer_supply());
   if (!refusal && c_.opening) refusal = by(AskedBy::opening, answer_opening());

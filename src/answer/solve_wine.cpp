@@ -4,12 +4,13 @@
 
 namespace capsigh::answer_detail {
 
-std::optional<Refusal> Solver::answer_wine() {
+// Where there is no such pressure the rest of the answer stands without it.
+void Solver::answer_wine() {
   const auto twenty = m_.content_temperature;
   Pressure p{};
   if (c_.container) {
     const auto found = equilibrium(m_, liquid_, filling_, twenty);
-    if (const auto* no = refused(found)) return *no;
+    if (refused(found) != nullptr) return;
     const auto& state = std::get<ClosedState>(found);
     p = state.pressure;
     if (trace_ != nullptr) trace_wine(state);
@@ -17,12 +18,11 @@ std::optional<Refusal> Solver::answer_wine() {
     const auto at = at_temperature(m_, liquid_, twenty);
     const auto found =
         pressure_for(m_, at, mix(m_, at, contact_.shares), m_.co2, contact_.contents[m_.co2]);
-    if (const auto* no = refused(found)) return *no;
+    if (refused(found) != nullptr) return;
     p = std::get<Pressure>(found);
     if (trace_ != nullptr) trace_wine(p);
   }
   answer_.wine_gauge = gauge(p, contact_.ambient);
-  return std::nullopt;
 }
 
 void Solver::trace_wine(Pressure root) {

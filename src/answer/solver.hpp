@@ -113,7 +113,7 @@ class Solver {
   void trace_gauge(const ClosedState& state);
   Molality trace_state(const ClosedState& state);
   Maybe answer_opening();
-  Maybe answer_wine();
+  void answer_wine();
   void trace_wine(Pressure root);
   void trace_wine(const ClosedState& state);
   Mass litre() const;

@@ -63,7 +63,7 @@ struct Moments {
   }
   void add(const Moments& more) {
     if (more.n == 0) return;
-    const double total = static_cast<double>(n + more.n);
+    const auto total = static_cast<double>(n + more.n);
     const double delta = more.mean - mean;
     squares +=
         more.squares + delta * delta * static_cast<double>(n) * static_cast<double>(more.n) / total;

@@ -35,3 +35,11 @@ TEST_CASE("with a bottle it is the bottle's") {
   CHECK(within_relative(si_value(r.answer.wine_gauge.value),
                         si_value(r.answer.package.at[0].pressure_gauge.value), 1e-10));
 }
+
+TEST_CASE("where 20 degC would be beyond the model, the rest of the answer stands") {
+  const auto r = answered(
+      "[liquid]\nlike = \"sparkling wine\"\n[contact]\ntemperature = \"0 degC\"\n"
+      "pressure = \"14 bar abs\"\n");
+  CHECK(r.answer.gases[0].volumes.asked);
+  CHECK_FALSE(r.answer.wine_gauge.asked);
+}
