@@ -165,7 +165,7 @@ void table_of_headspace(TextPage& page, const PackageFigures& p) {
   for (const auto gas : gases) head.push_back(fmt::format("{}, {}", gas, bar.text));
   const bool ethanol =
       std::any_of(p.at.begin(), p.at.end(), [](const auto& c) { return c.ethanol.asked; });
-  head.push_back("water");
+  head.emplace_back("water");
   if (ethanol) head.emplace_back("ethanol");
   row(page, head, kFirst, width);
   for (const auto& c : p.at) {

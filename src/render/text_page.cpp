@@ -86,8 +86,8 @@ std::pair<Dimension, std::string_view> TextPage::shown_as(const JsonUnit& json) 
       Shown{"d", Dimension::duration, "wk"},
       Shown{"s", Dimension::duration, "s"},
   };
-  const auto it = std::find_if(table.begin(), table.end(),
-                               [&](const Shown& row) { return row.ucum == json.ucum; });
+  const auto* const it = std::find_if(table.begin(), table.end(),
+                                      [&](const Shown& row) { return row.ucum == json.ucum; });
   if (it == table.end()) return {Dimension::gas_volumes, "vol"};
   return {it->dimension, it->unit};
 }
