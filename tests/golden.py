@@ -1,7 +1,8 @@
 """Golden outputs. Usage: golden.py bad|scenarios CAPSIGH TOP [--update]
 
 bad:        tests/recipes/bad/NAME.toml against NAME.expected (exit status, then standard error)
-scenarios:  scenarios/*.toml against tests/recipes/golden/NAME.txt and NAME.json
+scenarios:  scenarios/*.toml against tests/recipes/golden/NAME.txt and NAME.json; those with a
+            [card] against NAME.card.txt and NAME.card.csv too
 The digest of the constants changes with every table and is masked."""
 import difflib
 import pathlib
@@ -58,5 +59,13 @@ else:
             for line in wide:
                 print("wider than 80 columns:", line)
                 failures += 1
+        if "[card]" in recipe.read_text():
+            for form in ("text", "csv"):
+                done = run("card", str(recipe.relative_to(top)), "--as", form)
+                if done.returncode not in (0, 1):
+                    print(done.stderr)
+                    failures += 1
+                ending = ".card.txt" if form == "text" else ".card.csv"
+                compare(top / "tests/recipes/golden" / (recipe.stem + ending), masked(done.stdout))
 print(seen, "compared")
 sys.exit(1 if failures or not seen else 0)

@@ -154,6 +154,13 @@ std::vector<Doubt> each_doubt(Case& c) {
   if (c.opening) opening_inputs(list, *c.opening);
   if (c.conditioning) conditioning_inputs(list, *c.conditioning);
   if (c.supply) supply_inputs(list, c, *c.supply);
+  if (c.gauge) {
+    list.input("gauge.pressure", c.gauge->pressure);
+    list.input("gauge.temperature", c.gauge->temperature);
+    list.input("gauge.offset.pressure", c.gauge->pressure_offset);
+    list.input("gauge.offset.temperature", c.gauge->temperature_offset);
+    list.input("gauge.piercer_volume", c.gauge->dead);
+  }
   for (auto& solute : c.medium.liquid.solutes) {
     list.input("liquid." + std::string(solute.name), solute.amount);
   }

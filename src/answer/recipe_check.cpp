@@ -34,6 +34,7 @@ void RecipeCheck::check() {
   if (recipe_.container) check_container(*recipe_.container);
   if (recipe_.judging) check_judging(*recipe_.judging);
   check_life();
+  check_readings();
 }
 
 void RecipeCheck::error(std::string code, std::string message, std::string expected,

@@ -75,6 +75,11 @@ class RecipeCheck {
   void check_residual(const ConditioningSection& conditioning);
   void check_conditioning_contact(const ConditioningSection& conditioning);
   void check_supply(const SupplySection& supply);
+  void check_readings();
+  void check_gauge(const GaugeSection& gauge);
+  void check_piercer(const GaugeSection& gauge);
+  void check_charting(const ChartingSection& charting);
+  void check_card(const CardSection& card);
 };
 
 }  // namespace capsigh::answer_detail

@@ -12,6 +12,7 @@
 #include "capsigh/render/render.hpp"
 #include "files.hpp"
 #include "progress.hpp"
+#include "quality_command.hpp"
 
 namespace {
 
@@ -231,6 +232,11 @@ int run(int argc, char** argv) {
       ->check(whole_number(1, most_threads))
       ->needs(monte_carlo);
 
+  cli::CardArguments card;
+  const auto* card_command = cli::add_card(app, card);
+  cli::MergeArguments merge;
+  const auto* merge_command = cli::add_merge(app, merge);
+
   std::string name;
   std::string as = "text";
   std::string out;
@@ -253,6 +259,8 @@ int run(int argc, char** argv) {
     return fail(library.findings, unreadable ? system_failed : bad_input);
   }
   if (report_command->parsed()) return run_report(arguments, *library);
+  if (card_command->parsed()) return cli::run_card(card, *library);
+  if (merge_command->parsed()) return cli::run_merge(merge, *library);
   return run_constants(name, as, out, *library);
 }
 

@@ -10,16 +10,7 @@ namespace {
 
 using recipe_detail::Section;
 
-// The table behind a section's key; a complaint if it is something else.
-const Node* table(Section& top, const std::string& name) {
-  const Member* member = top.take(name);
-  if (member == nullptr) return nullptr;
-  if (member->value.kind == Node::Kind::table) return &member->value;
-  top.complain(member->value.place, "not-a-section",
-               fmt::format("'{}' is {}, not a section", name, kind_name(member->value.kind)),
-               fmt::format("[{}] and its keys below", name), fmt::format("[{}]", name));
-  return nullptr;
-}
+const Node* table(Section& top, const std::string& name) { return top.table(name); }
 
 class Reader {
  public:
@@ -46,6 +37,7 @@ class Reader {
       recipe_.supply = recipe_detail::read_supply(*node, recipe_, findings_);
     }
     read_judging(top);
+    recipe_detail::read_readings(top, recipe_);
     top.finish();
     recipe_.readable = !has_error(findings_);
     return {std::move(recipe_), std::move(findings_)};
@@ -56,15 +48,8 @@ class Reader {
     return {node, name, recipe_, findings_};
   }
 
-  // The { } group behind a key of a section; a complaint if it is something else.
   static const Node* subgroup(Section& s, const std::string& key, const std::string& example) {
-    const Member* member = s.take(key);
-    if (member == nullptr) return nullptr;
-    if (member->value.kind == Node::Kind::table) return &member->value;
-    s.complain(member->value.place, "not-a-section",
-               fmt::format("'{}' is {}, not a {{ }} group", key, kind_name(member->value.kind)),
-               "a { } group of keys", example);
-    return nullptr;
+    return s.group(key, example);
   }
 
   void read_about(Section& top) {
@@ -190,6 +175,7 @@ class Reader {
     judging.place = node->place;
     judging.rule = s.text("rule", "guarded");
     judging.risk = s.share("risk", "5 %", recipe_detail::Sign::positive);
+    recipe_.charting = s.charting();
     s.finish();
     recipe_.judging = std::move(judging);
   }

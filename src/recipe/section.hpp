@@ -61,6 +61,25 @@ class Section {
   std::vector<GivenTransmission> transmissions();
   /// Every key of this section as a share of the gas it names.
   std::vector<GivenShare> shares();
+  /// What an instrument may be off: "± 0.02 bar". The value is zero.
+  std::optional<Given<Pressure>> pressure_error(const std::string& key, std::string_view example);
+  std::optional<Given<TemperatureDifference>> temperature_error(const std::string& key,
+                                                                std::string_view example);
+  /// Differences, with or without ±.
+  std::optional<Given<Pressure>> pressure_step(const std::string& key, std::string_view example,
+                                               Sign sign);
+  std::optional<Given<TemperatureDifference>> temperature_step(const std::string& key,
+                                                               std::string_view example, Sign sign);
+  /// The keys of [judging] that are about readings.
+  ChartingSection charting();
+  /// The table behind a key of this section; a complaint if it is something else.
+  const Node* table(const std::string& key);
+  /// The { } group behind a key; a complaint if it is something else.
+  const Node* group(const std::string& key, const std::string& example);
+  /// A section of its own for a table inside this one.
+  Section inside(const Node& table, std::string name) {
+    return {table, std::move(name), recipe_, findings_};
+  }
   /// Every key of this section as free text.
   std::vector<std::pair<std::string, std::string>> free_text();
 
@@ -78,6 +97,10 @@ class Section {
   template <class Q>
   Given<Q> given(const Member& member, Dimension dimension, std::string_view example,
                  bool absolute_by_nature, Sign sign);
+  std::optional<ParsedQuantity> error_of(const Member& member, Dimension dimension,
+                                         std::string_view zero, std::string_view example);
+  void subgroup(ChartingSection& charting);
+  void group_by(ChartingSection& charting);
   GivenContent content(const Member& member, std::string_view example = "3.7 vol");
   GivenTarget target(const Member& member);
   GivenSolute amount_of(const Member& member, std::span<const Dimension> dimensions,
@@ -90,5 +113,8 @@ class Section {
   Findings& findings_;
   std::vector<std::string> known_;
 };
+
+/// Reads [gauge] and [card].
+void read_readings(Section& top, Recipe& recipe);
 
 }  // namespace capsigh::recipe_detail

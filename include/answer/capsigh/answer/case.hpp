@@ -44,6 +44,16 @@ struct ContactCase {
   std::optional<Uncertain<Fraction>> approach;  ///< of saturation actually reached
 };
 
+/// The instruments behind readings of a package, and what the piercer brings.
+struct GaugeCase {
+  Uncertain<Pressure> pressure;  ///< error of the gauge: zero, with its doubt
+  Uncertain<TemperatureDifference> temperature;
+  Uncertain<Pressure> pressure_offset;  ///< added to the reading
+  Uncertain<TemperatureDifference> temperature_offset;
+  std::optional<Uncertain<Volume>> dead;  ///< of the piercer
+  Shares dead_gas;                        ///< what it holds at ambient pressure; all zero: nothing
+};
+
 struct Case {
   Medium medium;
   AmbientCase ambient;
@@ -53,6 +63,7 @@ struct Case {
   std::optional<OpeningCase> opening;
   std::optional<ConditioningCase> conditioning;
   std::optional<SupplyCase> supply;
+  std::optional<GaugeCase> gauge;
   PerGas<std::uint8_t> in_contact;    ///< whether a gas belongs to the headspace at the contact
   PerGas<std::uint8_t> in_container;  ///< whether it belongs to the closed package
   Shares air;                         ///< of the room and of air in a headspace

@@ -88,6 +88,10 @@ struct Wanted {
 std::variant<ParsedQuantity, GrammarFault> parse_quantity(std::string_view text,
                                                           const Wanted& wanted);
 
+/// The unit a quantity that has been read is written in ("psi" of "0.5 psi", "vol" of "3.70 vol ±
+/// 0.10 vol"), or nullptr.
+const Unit* written_unit(std::string_view quantity, Dimension dimension);
+
 /// A number in a unit from its SI value; of a difference, without the unit's offset.
 double in_unit(double si, const Unit& unit);
 double difference_in_unit(double si, const Unit& unit);

@@ -176,6 +176,43 @@ struct JudgingSection {
   std::optional<Given<Fraction>> risk;
 };
 
+/// A column of a file of readings and what it holds: "Temp (F)" = "temperature [degF]".
+struct GivenColumn {
+  LocatedText header;
+  LocatedText meaning;
+};
+
+/// How readings are charted: the other keys of [judging].
+struct ChartingSection {
+  std::optional<std::size_t> subgroup;         ///< consecutive rows, or ...
+  std::optional<LocatedText> subgroup_column;  ///< rows with the same text in that column
+  std::optional<Place> subgroup_place;
+  std::vector<LocatedText> group_by;  ///< names of columns
+  std::vector<GivenColumn> columns;
+  std::optional<GivenContent> centre;  ///< established earlier: of the process in control ...
+  std::optional<GivenContent> sigma;   ///< ... and the standard deviation of its single values
+};
+
+/// The instruments behind readings.
+struct GaugeSection {
+  Place place;
+  std::optional<Given<Pressure>> pressure;  ///< zero ± its limit of error
+  std::optional<Given<TemperatureDifference>> temperature;
+  std::optional<Given<Pressure>> pressure_offset;  ///< from calibration: added to the reading
+  std::optional<Given<TemperatureDifference>> temperature_offset;
+  std::optional<Given<Pressure>> graduation;
+  std::optional<Given<Volume>> piercer_volume;
+  std::optional<LocatedText> piercer_gas;
+};
+
+/// The temperatures of an operator's card.
+struct CardSection {
+  Place place;
+  std::optional<Given<Temperature>> from;
+  std::optional<Given<Temperature>> to;
+  std::optional<Given<TemperatureDifference>> step;
+};
+
 struct Recipe {
   std::string file;
   bool readable = true;  ///< false if some value could not be read; it still counts as given
@@ -192,6 +229,9 @@ struct Recipe {
   std::optional<JudgingSection> judging;
   std::optional<ConditioningSection> conditioning;
   std::optional<SupplySection> supply;
+  ChartingSection charting;
+  std::optional<GaugeSection> gauge;
+  std::optional<CardSection> card;
   std::vector<std::pair<std::string, std::string>> inputs;  ///< as understood: key and text
 };
 

@@ -4,6 +4,7 @@
 
 #include <string>
 
+#include "capsigh/answer/card.hpp"
 #include "capsigh/answer/report.hpp"
 #include "capsigh/constants/library.hpp"
 #include "capsigh/quantity/grammar.hpp"
@@ -23,6 +24,11 @@ std::string csv_reports(const std::vector<std::pair<std::string, Report>>& repor
 
 /// Reports by the JSON contract: one an object, several an array.
 std::string json_reports(const std::vector<Report>& reports, bool with_trace);
+
+/// A card for the wall: 80 columns, no colour.
+std::string text_card(const Card& card);
+/// One row a temperature, RFC 4180, units in the header.
+std::string csv_card(const Card& card);
 
 /// Findings as a compiler prints them: file:line:column, the line, and the text underlined.
 std::string text_findings(const Findings& findings);
