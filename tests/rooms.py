@@ -12,8 +12,10 @@ SEES = {
     "recipe": {"quantity", "document"},
     "quality": {"quantity"},
     "answer": {"quantity", "document", "constants", "models", "balance", "recipe", "quality"},
+    "readings": {"quantity", "document", "constants", "models", "balance", "recipe", "quality", "answer"},
     "render": {"quantity", "document", "constants", "models", "balance", "recipe", "quality", "answer"},
-    "cli": {"quantity", "document", "constants", "models", "balance", "recipe", "quality", "answer", "render"},
+    "cli": {"quantity", "document", "constants", "models", "balance", "recipe", "quality", "answer", "readings",
+            "render"},
 }
 # Headers are stricter: constants reads documents, but none of its headers may.
 HEADER_FORBIDS = {"constants": {"document"}, "models": {"document"}, "balance": {"document"}}

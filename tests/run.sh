@@ -29,7 +29,8 @@ sh tests/setup.sh build test
 if [ "${1:-}" = full ]; then
   sh tests/setup.sh full
   build_and_test sanitized -DCMAKE_BUILD_TYPE=RelWithDebInfo -DCAPSIGH_SANITIZE=address,undefined
-  build_and_test clang -DCMAKE_BUILD_TYPE=Release -DCMAKE_CXX_COMPILER=clang++-14
+  build_and_test clang -DCMAKE_BUILD_TYPE=Release -DCMAKE_CXX_COMPILER=clang++-14 \
+    -DCAPSIGH_KILLS=200
   fuzz "${CAPSIGH_FUZZ_SECONDS:-60}"
   find src -name '*.cpp' -print0 |
     xargs -0 -n 4 -P "$(nproc)" clang-tidy-14 -p build/clang --quiet --warnings-as-errors='*'

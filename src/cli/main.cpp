@@ -10,20 +10,25 @@
 #include <thread>
 
 #include "capsigh/render/render.hpp"
+#include "command.hpp"
 #include "files.hpp"
 #include "progress.hpp"
 #include "quality_command.hpp"
+#include "readings_command.hpp"
 
 namespace {
 
 using namespace capsigh;
-
-enum Exit : int { done = 0, out_of_tolerance = 1, bad_input = 2, system_failed = 3 };
+using cli::assemble;
+using cli::bad_input;
+using cli::done;
+using cli::fail;
+using cli::out_of_tolerance;
+using cli::system_failed;
 
 struct ReportArguments {
   std::vector<std::string> recipes;
-  std::vector<std::string> with;
-  std::vector<std::string> sets;
+  cli::RecipeArguments around;
   std::vector<std::string> units;
   std::string as = "text";
   std::string out;
@@ -33,11 +38,6 @@ struct ReportArguments {
   std::uint64_t seed = 1;
   unsigned threads = 0;
 };
-
-int fail(const Findings& findings, int status) {
-  fmt::print(stderr, "{}", text_findings(findings));
-  return status;
-}
 
 // Writes where the result belongs; a file is whole or absent.
 int deliver(const std::string& text, const std::string& path) {
@@ -71,38 +71,6 @@ Outcome<std::vector<const Unit*>> display_units(const std::vector<std::string>& 
     units.push_back(&*it);
   }
   return {units, {}};
-}
-
-// A recipe with what --with lays under it and --set sets, as one document; `texts` collects the
-// bytes that the digest identifies.
-struct Assembled {
-  std::optional<Node> document;
-  Findings findings;
-  int status = done;
-};
-
-Assembled assemble(const std::string& path, const ReportArguments& arguments, std::string& texts) {
-  Assembled all;
-  all.document = Node{};
-  all.document->kind = Node::Kind::table;
-  std::vector<std::string> files = arguments.with;
-  if (!path.empty()) files.push_back(path);
-  for (const auto& file : files) {
-    const auto text = cli::read_input(file);
-    if (!text) return {{}, text.findings, system_failed};
-    texts += *text;
-    const auto document = parse_document(*text, file == "-" ? "standard input" : file);
-    if (!document) return {{}, document.findings, bad_input};
-    overlay(*all.document, *document);
-    all.document->place = document->place;
-  }
-  for (const auto& set : arguments.sets) {
-    texts += set + "\n";
-    const auto assignment = parse_assignment(set);
-    if (!assignment) return {{}, assignment.findings, bad_input};
-    overlay(*all.document, *assignment);
-  }
-  return all;
 }
 
 std::string rendered(const std::vector<std::pair<std::string, Report>>& reports,
@@ -145,7 +113,7 @@ int run_report(ReportArguments arguments, const Library& library) {
   const auto units = display_units(arguments.units);
   if (!units) return fail(units.findings, bad_input);
   if (arguments.recipes.empty()) {
-    if (arguments.sets.empty()) {
+    if (arguments.around.sets.empty()) {
       Finding f;
       f.code = "no-recipe";
       f.message = "report needs a recipe, or keys to --set";
@@ -160,7 +128,7 @@ int run_report(ReportArguments arguments, const Library& library) {
   int status = done;
   for (const auto& path : arguments.recipes) {
     std::string texts;
-    const auto assembled = assemble(path, arguments, texts);
+    const auto assembled = assemble(path, arguments.around, texts);
     if (!assembled.document) return fail(assembled.findings, assembled.status);
     const std::string name = path.empty() ? "--set" : path == "-" ? "standard input" : path;
     auto answered = report(read_recipe(*assembled.document, name), texts, library,
@@ -202,9 +170,11 @@ int run(int argc, char** argv) {
   ReportArguments arguments;
   auto* report_command = app.add_subcommand("report", "answer all that a recipe asks");
   report_command->add_option("RECIPE", arguments.recipes, "recipe files; - is standard input");
-  report_command->add_option("--with", arguments.with, "lay this shared file under the recipe")
+  report_command
+      ->add_option("--with", arguments.around.with, "lay this shared file under the recipe")
       ->allow_extra_args(false);
-  report_command->add_option("--set", arguments.sets, "set one key: contact.temperature=\"4 degC\"")
+  report_command
+      ->add_option("--set", arguments.around.sets, "set one key: contact.temperature=\"4 degC\"")
       ->allow_extra_args(false);
   report_command->add_option("--units", arguments.units, "units to display: psi,degF,vol")
       ->delimiter(',')
@@ -246,6 +216,9 @@ int run(int argc, char** argv) {
       ->check(CLI::IsMember({"text", "json"}));
   constants_command->add_option("--out", out, "write to this file");
 
+  cli::ReadingsArguments readings;
+  const auto* readings_command = cli::add_readings(app, readings);
+
   try {
     app.parse(argc, argv);
   } catch (const CLI::ParseError& e) {
@@ -261,6 +234,7 @@ int run(int argc, char** argv) {
   if (report_command->parsed()) return run_report(arguments, *library);
   if (card_command->parsed()) return cli::run_card(card, *library);
   if (merge_command->parsed()) return cli::run_merge(merge, *library);
+  if (readings_command->parsed()) return cli::run_readings(readings, *library);
   return run_constants(name, as, out, *library);
 }
 

@@ -6,7 +6,7 @@ import subprocess
 import sys
 
 compiler, top = sys.argv[1], pathlib.Path(sys.argv[2])
-order = ["quantity", "document", "constants", "models", "balance", "answer", "render"]
+order = ["quantity", "document", "constants", "models", "balance", "answer", "readings", "render"]
 lists = (top / "src/CMakeLists.txt").read_text()
 sees = {m[1]: (m[2] or "").split() for m in
         re.finditer(r"capsigh_room\((\w+)\s+SOURCES[^)]*?(?:SEES ([\w ]+))?\s*(?:LIBRARIES[^)]*|USES[^)]*)?\)",
