@@ -15,14 +15,14 @@ std::function<void(double)> progress(std::string what) {
     if (now == last) return;
     last = now;
     fmt::print(stderr, "\r{} {} %", what, now);
-    std::fflush(stderr);
+    static_cast<void>(std::fflush(stderr));
   };
 }
 
 void end_progress() {
   if (isatty(STDERR_FILENO) == 0) return;
   fmt::print(stderr, "\r\033[K");
-  std::fflush(stderr);
+  static_cast<void>(std::fflush(stderr));
 }
 
 }  // namespace capsigh::cli

@@ -61,11 +61,12 @@ bool has_target(const Card& card) {
 }
 
 std::string notes(const Card& card) {
+  const std::vector<const Unit*> asked{card.pressure, card.temperature};
   std::string out;
   const auto section = [&](std::string_view name) { out += fmt::format("\n{}\n", name); };
   if (card.advice.by != Advice::By::nothing) {
     section("To open the window");
-    out += wrapped("  ", render_detail::advice_text(card.advice, "open it"));
+    out += wrapped("  ", render_detail::advice_text(card.advice, "open it", asked));
   }
   if (!card.cautions.empty()) {
     section("Caution");

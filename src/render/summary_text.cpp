@@ -102,7 +102,8 @@ class SummaryText {
 
  private:
   void line(std::string_view label, const std::string& text) {
-    out_ += wrapped("  " + padded(label, kLabel), text);
+    const bool long_label = render_detail::columns(label) >= kLabel;
+    out_ += wrapped("  " + padded(label, kLabel) + (long_label ? " " : ""), text);
   }
 
   void stream(const StreamFigures& f) {

@@ -14,7 +14,6 @@ namespace {
 using render_detail::padded;
 using render_detail::printable;
 using render_detail::TextPage;
-using render_detail::unit;
 using render_detail::wrapped;
 
 class TextReport {

@@ -117,7 +117,7 @@ TEST_CASE("a text summary names what a shift leader needs") {
   s.reject();
   const std::string text = text_summary(s);
   for (const std::string word :
-       {"301, 1 of them rejected", "OUTSIDE", "Cpk", "per hour", "limits established",
+       {"301, 1 of them rejected", "300 inside", "Cpk", "per hour", "limits established",
         "a run on one side", "2025-12-01", "line 2, valve 3", "By line, valve"}) {
     INFO(word << "\n" << text);
     const bool found = text.find(word) != std::string::npos;
